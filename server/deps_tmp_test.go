@@ -1,0 +1,27 @@
+package main
+import (
+ _ "github.com/go-chi/chi/v5"
+ _ "github.com/go-chi/chi/v5/middleware"
+ _ "nhooyr.io/websocket"
+ _ "nhooyr.io/websocket/wsjson"
+ _ "github.com/a-h/templ"
+ _ "gonum.org/v1/gonum/stat"
+ _ "gonum.org/v1/gonum/mat"
+ _ "gonum.org/v1/gonum/optimize"
+ _ "gonum.org/v1/gonum/stat/distuv"
+ _ "gonum.org/v1/gonum/graph/path"
+ _ "gonum.org/v1/gonum/graph/simple"
+ _ "modernc.org/sqlite"
+ _ "github.com/invopop/jsonschema"
+ _ "github.com/santhosh-tekuri/jsonschema/v6"
+ _ "github.com/spf13/cobra"
+ _ "golang.org/x/time/rate"
+ _ "github.com/go-chi/httprate"
+ _ "pgregory.net/rapid"
+ _ "github.com/google/go-cmp/cmp"
+ _ "github.com/chromedp/chromedp"
+ _ "github.com/chromedp/chromedp/kb"
+ _ "github.com/peterstace/simplefeatures/geom"
+ _ "github.com/paulmach/orb/planar"
+)
+func main(){}
