@@ -1,5 +1,3 @@
-// Package sim steps one closed loop: a floor, a robot, its ring of range
-// sensors and its switching logic. It is the core of Leeway.
 package sim
 
 import (

@@ -1,6 +1,8 @@
 package sim
 
 import (
+	"math"
+
 	"leeway/sim/drive"
 	"leeway/sim/floor"
 	"leeway/sim/geom"
@@ -9,42 +11,217 @@ import (
 )
 
 // Run is one closed loop from its start to its Status.
-type Run struct{ stub int }
+type Run struct {
+	cfg  Config // as given, with the numbers that edits have changed since
+	dt   float64
+	tick int64
 
-// New checks the config and returns a run that stands at tick 0.
-func New(c Config) (*Run, error) { panic("contract") }
+	world  *floor.World
+	ring   *ring.Ring
+	drive  *drive.Drive
+	engine *logic.Engine
+	input  logic.Input
 
-// NewOn is New on a floor map that other runs share (built from the same floor).
-func NewOn(m *floor.Map, c Config) (*Run, error) { panic("contract") }
+	pose  geom.Pose
+	goal  geom.Vec
+	u     geom.Vec // wanted velocity, in the believed frame
+	since int64    // tick from which what is asked "within" counts
 
-// Step goes on by one tick. It does nothing once the run has ended.
-func (r *Run) Step() { panic("contract") }
+	edits []Edit
+	due   int // edits[:due] are done
 
-// Finish steps until the run has ended, and returns its outcome.
-func (r *Run) Finish() Outcome { panic("contract") }
+	switches []logic.Switch
+	contacts []Contact
+	touching touches
 
-// Edit enters a change due at the next tick (its Tick is set), and adds it to the run's edit list; a second edit of
-// the same thing at the same tick replaces the first.
-func (r *Run) Edit(e Edit) error { panic("contract") }
+	// room is a lower bound of the distance from the hull's centre to anything
+	// solid. As long as it is larger than what matters, neither contact nor
+	// clearance has to be asked for; in open floor that is almost always.
+	room      float64
+	moverStep float64 // the farthest that any mover goes in a tick, m
 
-// Edits returns the edit list so far.
-func (r *Run) Edits() []Edit { panic("contract") }
+	saturated int64
+	measures  Outcome
+}
+
+// Contact is one touch of the hull, from when it began.
+type Contact struct {
+	Tick  int64
+	Time  float64  // s
+	Point geom.Vec // on the thing touched
+	Ref   floor.Ref
+}
+
+// New checks the config and returns a run that stands at tick 0. The error is
+// a joined list of *ConfigError.
+func New(c Config) (*Run, error) {
+	m, err := floor.NewMap(c.Floor, reach(&c))
+	if err != nil {
+		return nil, err
+	}
+	return NewOn(m, c)
+}
+
+// NewOn is New on a floor map that other runs share; m must have been built
+// from the same floor.
+func NewOn(m *floor.Map, c Config) (*Run, error) {
+	if err := c.Check(); err != nil {
+		return nil, err
+	}
+	r := &Run{
+		cfg:      c,
+		dt:       c.Tick,
+		world:    m.NewWorld(),
+		pose:     c.Start,
+		goal:     c.Goal,
+		switches: make([]logic.Switch, 0, 256),
+		contacts: make([]Contact, 0, 64),
+	}
+	r.edits = append(r.edits, c.Edits...)
+	r.idealise()
+	r.ring = ring.New(r.cfg.Ring, c.Seed)
+	r.drive = drive.New(r.cfg.Drive, c.Tick, c.Seed, c.Start)
+	r.engine = logic.New(c.Logic)
+	r.input = logic.Input{GoalRadius: c.GoalRadius, Hull: c.Hull, Scan: r.ring.Scan()}
+	if r.cfg.Steer.Rule == steerLookAhead {
+		r.input.Ahead = r.cfg.Steer.Ahead
+	}
+	for _, mv := range c.Floor.Movers {
+		r.moverStep = max(r.moverStep, mv.Speed*c.Tick)
+	}
+	r.measures = Outcome{Leeway: math.Inf(1), Hash: hashSeed}
+	r.measureLeeway()
+	return r, nil
+}
+
+// reach is how far the floor will be asked: it tunes the index only.
+func reach(c *Config) float64 { return c.Ring.Mount + c.Ring.Max }
+
+// idealise throws the switches of the config: what a shadow is, and nothing else.
+func (r *Run) idealise() {
+	c := &r.cfg
+	if c.Ideal&PointMotion != 0 {
+		c.Drive.Model = drive.Point
+	}
+	if c.Ideal&NoWheelLimits != 0 {
+		c.Drive.MaxWheelSpeed, c.Drive.MaxWheelAccel, c.Steer.MaxWheelSpeed = 0, 0, 0
+	}
+	if c.Ideal&NoLag != 0 {
+		c.Drive.Lag, c.Drive.DeadTime = 0, 0
+	}
+	if c.Ideal&AllRoundSight != 0 {
+		c.Ring.AllRound = true
+	}
+	if c.Ideal&NoiselessSight != 0 {
+		c.Ring.Noiseless = true
+	}
+	if c.Ideal&TruePosition != 0 {
+		c.Drive.DeadReckoning = false
+	}
+	if c.Drive.Model != drive.TwoWheels {
+		c.Drive.MaxWheelSpeed, c.Drive.MaxWheelAccel, c.Steer.MaxWheelSpeed = 0, 0, 0
+		c.Drive.Lag, c.Drive.DeadTime = 0, 0
+	}
+}
+
+// Step goes on by one tick. It does nothing once the run has ended, unless an
+// edit that is due sets it going again.
+func (r *Run) Step() {
+	r.applyEdits()
+	if r.measures.Status != Running {
+		return
+	}
+	r.moveMovers()
+	r.sense()
+	r.estimate()
+	r.decide()
+	cmd := r.steer()
+	r.actuate(cmd)
+	r.move()
+	r.measure()
+}
+
+// Finish steps until the run has ended and no edit is left to revive it, and
+// returns its outcome.
+func (r *Run) Finish() Outcome {
+	for {
+		r.Step()
+		if r.measures.Status != Running && !r.editDue() {
+			return r.Outcome()
+		}
+	}
+}
 
 // Outcome returns the measures so far.
-func (r *Run) Outcome() Outcome { panic("contract") }
+func (r *Run) Outcome() Outcome {
+	o := r.measures
+	o.Ticks = r.tick
+	o.Time = r.time()
+	if r.tick > 0 {
+		o.Saturated = float64(r.saturated) / float64(r.tick)
+	}
+	return o
+}
 
-// What a viewer needs. The returned memory is the run's own: read, do not keep.
-func (r *Run) Tick() int64              { panic("contract") }
-func (r *Run) Config() *Config          { panic("contract") }
-func (r *Run) Pose() geom.Pose          { panic("contract") }
-func (r *Run) Belief() drive.Estimate   { panic("contract") }
-func (r *Run) Scan() *ring.Scan         { panic("contract") }
-func (r *Run) World() *floor.World      { panic("contract") }
-func (r *Run) Goal() geom.Vec           { panic("contract") }
-func (r *Run) Logic() *logic.Logic      { panic("contract") }
-func (r *Run) Engine() *logic.Engine    { panic("contract") }
-func (r *Run) Switches() []logic.Switch { panic("contract") }
-func (r *Run) Gap() float64             { panic("contract") } // hull to the nearest solid now, m
+func (r *Run) time() float64 { return float64(r.tick) * r.dt }
 
-// Why returns the sentence for the current mode: why it was entered.
-func (r *Run) Why() string { panic("contract") }
+// Tick returns how many ticks have been stepped.
+func (r *Run) Tick() int64 { return r.tick }
+
+// Time returns the time of the run, s.
+func (r *Run) Time() float64 { return r.time() }
+
+// Config returns the config in force: idealised, and with the numbers that
+// edits have changed. Read only.
+func (r *Run) Config() *Config { return &r.cfg }
+
+// Pose returns where the robot is.
+func (r *Run) Pose() geom.Pose { return r.pose }
+
+// Belief returns where the robot believed itself to be when it last reckoned.
+func (r *Run) Belief() drive.Estimate { return r.drive.Estimate() }
+
+// Wanted returns the velocity u that the logic asked for last, in the frame of
+// the belief.
+func (r *Run) Wanted() geom.Vec { return r.u }
+
+// Drive returns the machine. Read only.
+func (r *Run) Drive() *drive.Drive { return r.drive }
+
+// Scan returns what the ring knows. Read only.
+func (r *Run) Scan() *ring.Scan { return r.ring.Scan() }
+
+// World returns the floor as it stands now. Read only.
+func (r *Run) World() *floor.World { return r.world }
+
+// Goal returns where the goal is now.
+func (r *Run) Goal() geom.Vec { return r.goal }
+
+// Engine returns the switching automaton's state. Read only.
+func (r *Run) Engine() *logic.Engine { return r.engine }
+
+// Switches returns every decision to change mode so far, with what was looked
+// at; the first maxLogged of them.
+func (r *Run) Switches() []logic.Switch { return r.switches }
+
+// Contacts returns the touches so far; the first maxLogged of them.
+func (r *Run) Contacts() []Contact { return r.contacts }
+
+// Gap returns the distance from the hull to the nearest solid now, m: negative
+// when it is pushed in, +Inf on an empty floor.
+func (r *Run) Gap() float64 {
+	n, ok := r.world.Nearest(r.pose.Pos, farthest)
+	if !ok {
+		return math.Inf(1)
+	}
+	return n.Distance - r.cfg.Hull
+}
+
+// Why says in one sentence why the current mode was entered.
+func (r *Run) Why() string {
+	s, ok := r.engine.LastSwitch()
+	if !ok {
+		return "This is where the logic starts."
+	}
+	return r.cfg.Logic.Why(s)
+}
