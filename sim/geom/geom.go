@@ -27,8 +27,9 @@ func (a Vec) Add(b Vec) Vec { return Vec{a.X + b.X, a.Y + b.Y} }
 // Sub returns a − b.
 func (a Vec) Sub(b Vec) Vec { return Vec{a.X - b.X, a.Y - b.Y} }
 
-// Scale returns k·a.
-func (a Vec) Scale(k float64) Vec { return Vec{k * a.X, k * a.Y} }
+// Scale returns k·a. The products are rounded at once: without it, a sum that
+// follows could fuse with them after inlining.
+func (a Vec) Scale(k float64) Vec { return Vec{float64(k * a.X), float64(k * a.Y)} }
 
 // AddScaled returns a + k·b.
 func (a Vec) AddScaled(k float64, b Vec) Vec {
