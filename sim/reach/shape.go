@@ -1,0 +1,148 @@
+package reach
+
+import (
+	"fmt"
+	"math"
+
+	"leeway/sim/floor"
+	"leeway/sim/geom"
+)
+
+// prim is what every solid is taken apart into: a segment with a thickness.
+// Walls and the sides of polygons have none; a disc is a segment of no length
+// with its radius for a thickness.
+type prim struct {
+	a, b  geom.Vec
+	thick float64
+	solid int32 // whose it is
+}
+
+// covers reports whether p lies inside the prim grown by r.
+func (q *prim) covers(p geom.Vec, r float64) bool {
+	return pointGap2(p, q.a, q.b) < square(q.thick+r)
+}
+
+// fill is the inside of a polygon.
+type fill struct {
+	corners  []geom.Vec
+	min, max geom.Vec
+	solid    int32
+}
+
+// contains reports whether p lies inside the polygon, by the parity of the crossings of a ray along +x.
+func (f *fill) contains(p geom.Vec) bool {
+	if p.X < f.min.X || p.X > f.max.X || p.Y < f.min.Y || p.Y > f.max.Y {
+		return false
+	}
+	in := false
+	a := f.corners[len(f.corners)-1]
+	for _, b := range f.corners {
+		if (a.Y > p.Y) != (b.Y > p.Y) {
+			left := b.Sub(a).Cross(p.Sub(a)) > 0
+			if left == (b.Y > a.Y) {
+				in = !in
+			}
+		}
+		a = b
+	}
+	return in
+}
+
+// build takes the solids apart.
+func (y *Yard) build(c floor.Config) error {
+	for i := range c.Solids {
+		s := &c.Solids[i]
+		y.ids = append(y.ids, s.ID)
+		if err := check(s); err != nil {
+			return fmt.Errorf("%s: %w", y.name(int32(i)), err)
+		}
+		switch s.Kind {
+		case floor.Disc:
+			y.prims = append(y.prims, prim{s.Points[0], s.Points[0], s.Radius, int32(i)})
+		case floor.Polygon:
+			f := fill{corners: s.Points, min: s.Points[0], max: s.Points[0], solid: int32(i)}
+			a := s.Points[len(s.Points)-1]
+			for _, b := range s.Points {
+				y.prims = append(y.prims, prim{a, b, 0, int32(i)})
+				f.min = geom.Vec{X: math.Min(f.min.X, b.X), Y: math.Min(f.min.Y, b.Y)}
+				f.max = geom.Vec{X: math.Max(f.max.X, b.X), Y: math.Max(f.max.Y, b.Y)}
+				a = b
+			}
+			y.fills = append(y.fills, f)
+		case floor.Wall:
+			for k := 1; k < len(s.Points); k++ {
+				y.prims = append(y.prims, prim{s.Points[k-1], s.Points[k], 0, int32(i)})
+			}
+		}
+	}
+	return nil
+}
+
+// check reports what is wrong with a solid.
+func check(s *floor.Solid) error {
+	least := 1
+	switch s.Kind {
+	case floor.Wall:
+		least = 2
+	case floor.Polygon:
+		least = 3
+	case floor.Disc:
+		if !(s.Radius >= 0) || math.IsInf(s.Radius, 0) {
+			return fmt.Errorf("radius %v m is not a finite number of at least 0", s.Radius)
+		}
+	default:
+		return fmt.Errorf("kind %d is none of wall, polygon and disc", s.Kind)
+	}
+	if len(s.Points) < least {
+		return fmt.Errorf("has %d points and needs %d", len(s.Points), least)
+	}
+	for _, p := range s.Points {
+		if !p.Finite() {
+			return fmt.Errorf("point %v is not finite", p)
+		}
+	}
+	return nil
+}
+
+func square(x float64) float64 { return x * x }
+
+// pointGap2 returns the squared distance of p to the segment from a to b.
+func pointGap2(p, a, b geom.Vec) float64 {
+	ab, ap := b.Sub(a), p.Sub(a)
+	along, n := ap.Dot(ab), ab.Norm2()
+	switch {
+	case along <= 0 || n == 0:
+		return ap.Norm2()
+	case along >= n:
+		return p.Sub(b).Norm2()
+	}
+	c := ap.Cross(ab)
+	return c * c / n
+}
+
+// beam is a straight piece of a way, made ready for being tested against many prims.
+type beam struct {
+	p, q, u geom.Vec // ends and unit direction; u is zero when the ends coincide
+}
+
+func newBeam(p, q geom.Vec) beam { return beam{p, q, q.Sub(p).Unit()} }
+
+// meets reports whether the beam comes nearer than r to the segment of q, its thickness counted in.
+func (l *beam) meets(q *prim, r float64) bool {
+	r += q.thick
+	pa, pb := q.a.Sub(l.p), q.b.Sub(l.p)
+	sa, sb := l.u.Cross(pa), l.u.Cross(pb) // signed distances from the beam's line
+	if (sa >= r && sb >= r) || (sa <= -r && sb <= -r) {
+		return l.u == geom.Vec{} && pointGap2(l.p, q.a, q.b) < r*r
+	}
+	r2 := r * r
+	if pointGap2(q.a, l.p, l.q) < r2 || pointGap2(q.b, l.p, l.q) < r2 ||
+		pointGap2(l.p, q.a, q.b) < r2 || pointGap2(l.q, q.a, q.b) < r2 {
+		return true
+	}
+	if (sa > 0) == (sb > 0) {
+		return false
+	}
+	ab := q.b.Sub(q.a)
+	return (ab.Cross(l.p.Sub(q.a)) > 0) != (ab.Cross(l.q.Sub(q.a)) > 0)
+}
