@@ -21,6 +21,25 @@ func NearestOnSegment(p Vec, s Segment) (q Vec, f float64) {
 	return s.A.AddScaled(f, e), f
 }
 
+// FromSegment returns the displacement v to p from the nearest point of s. Beside
+// the segment it is worked out as a multiple of the normal,
+//
+//	v = (e × a / |e|²)·e⊥,   e = B − A, a = p − A
+//
+// so that its direction is the normal of s to the last bits however close p is; NearestOnSegment
+// loses that direction when p comes as near as a coordinate is rounded.
+func FromSegment(p Vec, s Segment) (v Vec) {
+	e, a := s.B.Sub(s.A), p.Sub(s.A)
+	x, n := a.Dot(e), e.Norm2()
+	switch {
+	case !(x > 0):
+		return a
+	case x >= n:
+		return p.Sub(s.B)
+	}
+	return e.Perp().Scale(e.Cross(a) / n)
+}
+
 // DistanceToSegment returns the distance from p to s.
 func DistanceToSegment(p Vec, s Segment) float64 {
 	q, _ := NearestOnSegment(p, s)

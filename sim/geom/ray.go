@@ -121,8 +121,7 @@ func DiscTouchesDisc(p, d Vec, r float64, c Disc) (t float64, ok bool) {
 // each end (their Minkowski sum). Distance to a convex set is a convex function along a
 // straight motion, so a disc that is not coming nearer at the start never will.
 func DiscTouchesSegment(p, d Vec, r float64, s Segment) (t float64, ok bool) {
-	q, _ := NearestOnSegment(p, s)
-	v := p.Sub(q)
+	v := FromSegment(p, s)
 	if v.Norm2() <= float64(r*r) {
 		return 0, v.Dot(d) < 0
 	}
