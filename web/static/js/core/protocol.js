@@ -1,0 +1,214 @@
+// Protocol: the messages of the live stream, as types, and what makes a message
+// out of a text. The server is trusted to send what the types say; what is taken
+// care of here is that lists which are empty may be missing.
+
+/** @typedef {[number, number]} Point */
+/** @typedef {[number, number, number]} Pose x, y in metres, heading in radians */
+/** @typedef {[number, number, number]} TrailPoint x, y in metres, index of the mode */
+
+/**
+ * How a mode looks.
+ * @typedef {'goal' | 'wall' | 'avoid' | 'done' | 'fail' | 'other'} Look
+ */
+
+/** @typedef {{name: string, look: Look}} Mode */
+
+/**
+ * A solid. Points: the corners of a polygon, the points of a wall, or the centre
+ * of a disc. Its anchor is the first of them.
+ * @typedef {object} Solid
+ * @property {string} id
+ * @property {'wall' | 'polygon' | 'disc'} shape
+ * @property {Point[]} points
+ * @property {number} [radius]
+ * @property {boolean} [fixed] it cannot be moved
+ */
+
+/**
+ * A mover. With a radius it is a disc, else a box of half sizes half, turned by
+ * heading. Its anchor is the first point of its route.
+ * @typedef {object} Mover
+ * @property {string} id
+ * @property {number} [radius]
+ * @property {Point} [half]
+ * @property {number} [heading]
+ * @property {Point[]} route
+ * @property {boolean} [loop]
+ */
+
+/**
+ * A piece of the brief: plain text, a number, or a choice.
+ * @typedef {object} Part
+ * @property {string} [text]
+ * @property {string} [number] path of the number
+ * @property {string} [choice] path of the choice
+ * @property {number | string} [value]
+ * @property {string} [unit]
+ * @property {number} [min]
+ * @property {number} [max]
+ * @property {number} [step]
+ * @property {number} [decimals]
+ * @property {'now' | 'restart'} [applies]
+ * @property {string} [label]
+ * @property {{value: string, label: string}[]} [options]
+ */
+
+/** @typedef {{within_s?: number, leeway_m?: number, switches?: number}} Asked */
+
+/**
+ * @typedef {object} Frame
+ * @property {'frame'} kind
+ * @property {number} tick
+ * @property {number} time s
+ * @property {boolean} playing
+ * @property {number} speed 0: as fast as it goes
+ * @property {number} viewers
+ * @property {Pose} pose
+ * @property {Pose} belief
+ * @property {number} mode
+ * @property {-1 | 0 | 1} side 1: the wall is on the left, −1: on the right
+ * @property {number} since s, when the mode was entered
+ * @property {string} why
+ * @property {number[]} ranges m, from the mount
+ * @property {string} hits a '1' for each beam that met something
+ * @property {number | null} gap hull to the nearest solid, m
+ * @property {number | null} leeway
+ * @property {[number, number, number, number, number] | null} closest hull x, y; place x, y; time
+ * @property {number} way m
+ * @property {number} switches
+ * @property {number} contacts
+ * @property {number} saturated share of the time
+ * @property {number} estimate_error m
+ * @property {Point[]} movers
+ * @property {Point} goal
+ * @property {[string, number, number][]} moved id and anchor of each solid moved since hello
+ * @property {string} status
+ * @property {string} [reason]
+ * @property {string} [hash]
+ * @property {number} trail_from
+ * @property {TrailPoint[]} trail
+ */
+
+/**
+ * @typedef {object} Hello
+ * @property {'hello'} kind
+ * @property {string} session
+ * @property {string} name
+ * @property {string} [purpose]
+ * @property {string} file
+ * @property {number} tick_s
+ * @property {boolean} playing
+ * @property {number} speed
+ * @property {number} viewers
+ * @property {number} [idle_minutes]
+ * @property {[number, number, number, number]} bounds
+ * @property {Pose} start
+ * @property {[number, number, number]} goal x, y, radius
+ * @property {number} hull radius, m
+ * @property {number} track
+ * @property {number} wheel radius, m
+ * @property {number} mount
+ * @property {number} range_max
+ * @property {number[]} bearings radians from the nose
+ * @property {string} motion
+ * @property {boolean} [all_round]
+ * @property {Mode[]} modes
+ * @property {Solid[]} solids
+ * @property {Mover[]} movers
+ * @property {Part[]} brief
+ * @property {Asked} asked
+ * @property {TrailPoint[]} trail
+ * @property {Frame} frame
+ */
+
+/** @typedef {{kind: 'problem', about: string, text: string}} Problem */
+/** @typedef {{kind: 'notice', text: string}} Notice */
+/** @typedef {{kind: 'ended', text: string}} Ended */
+/** @typedef {Hello | Frame | Problem | Notice | Ended} Message */
+
+/**
+ * What can be dragged.
+ * @typedef {'goal' | 'start' | 'robot' | 'solid' | 'mover'} What
+ */
+
+/**
+ * A message to the server.
+ * @typedef {{kind: 'drag', what: What, id?: string, x: number, y: number, done: boolean}
+ *   | {kind: 'play' | 'pause' | 'tick' | 'restart' | 'resync'}
+ *   | {kind: 'speed', value: number}
+ *   | {kind: 'number', path: string, value: number}
+ *   | {kind: 'choice', path: string, value: string}} Command
+ */
+
+/**
+ * The message in a text, or null when there is none that this page knows.
+ * @param {string} text
+ * @returns {Message | null}
+ */
+export function decode(text) {
+  let m;
+  try {
+    m = JSON.parse(text);
+  } catch {
+    return null;
+  }
+  if (typeof m !== 'object' || m === null) return null;
+  switch (m.kind) {
+    case 'hello':
+      return hello(m);
+    case 'frame':
+      return frame(m);
+    case 'problem':
+    case 'notice':
+    case 'ended':
+      return { ...m, text: String(m.text ?? ''), about: String(m.about ?? '') };
+    default:
+      return null;
+  }
+}
+
+/**
+ * @param {any} m
+ * @returns {Hello}
+ */
+export function hello(m) {
+  return {
+    ...m,
+    kind: 'hello',
+    bearings: m.bearings ?? [],
+    modes: m.modes ?? [],
+    solids: (m.solids ?? []).map((/** @type {any} */ s) => ({ ...s, points: s.points ?? [] })),
+    movers: (m.movers ?? []).map((/** @type {any} */ v) => ({ ...v, route: v.route ?? [] })),
+    brief: m.brief ?? [],
+    asked: m.asked ?? {},
+    trail: m.trail ?? [],
+    frame: frame(m.frame ?? {}),
+  };
+}
+
+/**
+ * @param {any} m
+ * @returns {Frame}
+ */
+function frame(m) {
+  return {
+    ...m,
+    kind: 'frame',
+    ranges: m.ranges ?? [],
+    hits: m.hits ?? '',
+    movers: m.movers ?? [],
+    moved: m.moved ?? [],
+    trail: m.trail ?? [],
+    trail_from: m.trail_from ?? 0,
+    status: m.status ?? 'running',
+    why: m.why ?? '',
+  };
+}
+
+/**
+ * The text of a command, its lengths rounded to tenths of a millimetre.
+ * @param {Command} command
+ */
+export function encode(command) {
+  return JSON.stringify(command, (key, value) => (key === 'x' || key === 'y' ? Math.round(value * 1e4) / 1e4 : value));
+}
