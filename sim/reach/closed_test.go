@@ -1,15 +1,14 @@
 package reach_test
 
 import (
-	"encoding/json"
 	"math"
-	"os"
 	"strings"
 	"testing"
 
 	"leeway/sim/floor"
 	"leeway/sim/geom"
 	"leeway/sim/reach"
+	"leeway/sim/truth"
 )
 
 func wall(points ...geom.Vec) floor.Solid { return floor.Solid{Kind: floor.Wall, Points: points} }
@@ -117,7 +116,7 @@ func TestBitangents(t *testing.T) {
 
 // H-01 of the published values: LS87 and Lum06, the shortest way of a point round a rectangle.
 func TestShortestRoundTheRectangle(t *testing.T) {
-	want := publishedShortest(t)
+	want := truth.Values(t, "H-01", "")[3]
 	for _, hull := range []float64{1e-5, reach.MinHull} {
 		r := ask(t, on(box(4, -1, 6, 3)), hull, geom.Vec{}, geom.Vec{X: 10}, 0)
 		// The hull turns by 2·atan(1/4) in all and adds its radius times that.
@@ -127,34 +126,6 @@ func TestShortestRoundTheRectangle(t *testing.T) {
 	r := ask(t, on(box(4, -1, 6, 3)), 0.5, geom.Vec{}, geom.Vec{X: 10}, 0)
 	d := math.Hypot(4, 1)
 	close(t, "hull 0.5", r.Length, 2+2*math.Sqrt(d*d-0.25)+2*0.5*(math.Asin(0.5/d)+math.Atan2(1, 4)), 1e-12)
-}
-
-func publishedShortest(t *testing.T) float64 {
-	t.Helper()
-	data, err := os.ReadFile("../../testdata/published.json")
-	if err != nil {
-		t.Fatal(err)
-	}
-	var rows []struct {
-		ID       string `json:"id"`
-		Expected []struct {
-			Value json.RawMessage `json:"value"`
-		} `json:"expected"`
-	}
-	if err := json.Unmarshal(data, &rows); err != nil {
-		t.Fatal(err)
-	}
-	for _, r := range rows {
-		if r.ID == "H-01" {
-			var v []float64
-			if err := json.Unmarshal(r.Expected[0].Value, &v); err != nil || len(v) != 4 {
-				t.Fatalf("H-01 is not four numbers: %v %v", v, err)
-			}
-			return v[3]
-		}
-	}
-	t.Fatal("H-01 is not among the published values")
-	return 0
 }
 
 // A door of a width just above and just below the hull's, and just so.

@@ -24,9 +24,12 @@ func TestHorizonHidesOnlyWhatIsBlocked(t *testing.T) {
 				p = geom.Vec{X: math.Round(p.X), Y: math.Round(p.Y)}
 				d = geom.Vec{X: math.Round(d.X), Y: math.Round(d.Y)}
 			}
+			if d == (geom.Vec{}) {
+				d.X = 1
+			}
 			switch rng.IntN(3) {
 			case 0:
-				c.Solids = append(c.Solids, floor.Solid{Kind: floor.Disc, Points: []geom.Vec{p}, Radius: 0.6 * rng.Float64()})
+				c.Solids = append(c.Solids, floor.Solid{Kind: floor.Disc, Points: []geom.Vec{p}, Radius: 0.01 + 0.6*rng.Float64()})
 			case 1:
 				c.Solids = append(c.Solids, floor.Solid{Kind: floor.Wall, Points: []geom.Vec{p, p.Add(d), p.Add(d).Add(d.Perp())}})
 			default:

@@ -75,8 +75,9 @@ func Shortest(c floor.Config, hull float64, from, to geom.Vec, goalRadius float6
 }
 
 // Yard is a floor as one hull sees it. It remembers what it has found out from
-// one question to the next, so it is for one goroutine at a time; its answers
-// do not depend on what was asked before.
+// one question to the next, so it is for one goroutine at a time. What was asked
+// before changes its answers by rounding at most, and which of two equally short
+// ways is given.
 type Yard struct {
 	hull  float64
 	ids   []string // of the solids, for reasons

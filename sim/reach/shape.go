@@ -24,28 +24,13 @@ func (q *prim) covers(p geom.Vec, r float64) bool {
 
 // fill is the inside of a polygon.
 type fill struct {
-	corners  []geom.Vec
+	corners  geom.Polygon
 	min, max geom.Vec
 	solid    int32
 }
 
-// contains reports whether p lies inside the polygon, by the parity of the crossings of a ray along +x.
 func (f *fill) contains(p geom.Vec) bool {
-	if p.X < f.min.X || p.X > f.max.X || p.Y < f.min.Y || p.Y > f.max.Y {
-		return false
-	}
-	in := false
-	a := f.corners[len(f.corners)-1]
-	for _, b := range f.corners {
-		if (a.Y > p.Y) != (b.Y > p.Y) {
-			left := b.Sub(a).Cross(p.Sub(a)) > 0
-			if left == (b.Y > a.Y) {
-				in = !in
-			}
-		}
-		a = b
-	}
-	return in
+	return p.X >= f.min.X && p.X <= f.max.X && p.Y >= f.min.Y && p.Y <= f.max.Y && f.corners.Contains(p)
 }
 
 // build takes the solids apart.
@@ -53,7 +38,7 @@ func (y *Yard) build(c floor.Config) error {
 	for i := range c.Solids {
 		s := &c.Solids[i]
 		y.ids = append(y.ids, s.ID)
-		if err := check(s); err != nil {
+		if err := floor.CheckSolid(*s); err != nil {
 			return fmt.Errorf("%s: %w", y.name(int32(i)), err)
 		}
 		switch s.Kind {
@@ -61,44 +46,17 @@ func (y *Yard) build(c floor.Config) error {
 			y.prims = append(y.prims, prim{s.Points[0], s.Points[0], s.Radius, int32(i)})
 		case floor.Polygon:
 			f := fill{corners: s.Points, min: s.Points[0], max: s.Points[0], solid: int32(i)}
-			a := s.Points[len(s.Points)-1]
-			for _, b := range s.Points {
-				y.prims = append(y.prims, prim{a, b, 0, int32(i)})
-				f.min = geom.Vec{X: math.Min(f.min.X, b.X), Y: math.Min(f.min.Y, b.Y)}
-				f.max = geom.Vec{X: math.Max(f.max.X, b.X), Y: math.Max(f.max.Y, b.Y)}
-				a = b
+			for k := range f.corners {
+				e := f.corners.Edge(k)
+				y.prims = append(y.prims, prim{e.A, e.B, 0, int32(i)})
+				f.min = geom.Vec{X: math.Min(f.min.X, e.A.X), Y: math.Min(f.min.Y, e.A.Y)}
+				f.max = geom.Vec{X: math.Max(f.max.X, e.A.X), Y: math.Max(f.max.Y, e.A.Y)}
 			}
 			y.fills = append(y.fills, f)
 		case floor.Wall:
 			for k := 1; k < len(s.Points); k++ {
 				y.prims = append(y.prims, prim{s.Points[k-1], s.Points[k], 0, int32(i)})
 			}
-		}
-	}
-	return nil
-}
-
-// check reports what is wrong with a solid.
-func check(s *floor.Solid) error {
-	least := 1
-	switch s.Kind {
-	case floor.Wall:
-		least = 2
-	case floor.Polygon:
-		least = 3
-	case floor.Disc:
-		if !(s.Radius >= 0) || math.IsInf(s.Radius, 0) {
-			return fmt.Errorf("radius %v m is not a finite number of at least 0", s.Radius)
-		}
-	default:
-		return fmt.Errorf("kind %d is none of wall, polygon and disc", s.Kind)
-	}
-	if len(s.Points) < least {
-		return fmt.Errorf("has %d points and needs %d", len(s.Points), least)
-	}
-	for _, p := range s.Points {
-		if !p.Finite() {
-			return fmt.Errorf("point %v is not finite", p)
 		}
 	}
 	return nil
