@@ -40,16 +40,20 @@ func newDecay(h, lag float64) decay {
 }
 
 // fall returns 1 − e^(−x) for x ≥ 0. For small x the difference would cancel;
-// the series is cut after x⁹/9!, which below 1/16 leaves out less than 2·10⁻¹⁸
+// the series is cut after x⁹/9!, which below 1/16 leaves out less than 5·10⁻¹⁸
 // of the result.
 func fall(x float64) float64 {
-	if x >= 0.0625 {
+	if x >= 1.0/16 {
 		return 1 - geom.Exp(-x)
 	}
-	s := 1.0
-	for k := 9.0; k >= 2; k-- {
-		s = 1 - float64(x*s)/k
-	}
+	s := 1.0/40320 - float64(x*(1.0/362880))
+	s = 1.0/5040 - float64(x*s)
+	s = 1.0/720 - float64(x*s)
+	s = 1.0/120 - float64(x*s)
+	s = 1.0/24 - float64(x*s)
+	s = 1.0/6 - float64(x*s)
+	s = 1.0/2 - float64(x*s)
+	s = 1 - float64(x*s)
 	return float64(x * s)
 }
 
