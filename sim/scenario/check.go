@@ -44,6 +44,14 @@ func (c checker) say(path, format string, args ...any) {
 	}
 }
 
+// clash reports that the value at path does not go with the one at other.
+func (c checker) clash(path, other, format string, args ...any) {
+	if !c.full() {
+		c.add(path, -1, true, fmt.Sprintf(format, args...))
+		c.list[len(c.list)-1].clash = []string{other}
+	}
+}
+
 // value checks a value and all that is in it against the rules.
 func (c checker) value(s *spec, v reflect.Value, p *path) {
 	if len(c.list) > 0 && c.bad[p.String()] {
@@ -74,7 +82,11 @@ func (c checker) value(s *spec, v reflect.Value, p *path) {
 			wrong(false, "may hold at most %v %s; it holds %d", r.Max, r.Label, n)
 			return
 		} else if float64(n) < r.Min {
-			wrong(false, "must hold at least %v %s; it holds %d", r.Min, r.Label, n)
+			if n == 0 {
+				wrong(false, "must not be empty")
+			} else {
+				wrong(false, "must hold at least %v %s; it holds %d", r.Min, r.Label, n)
+			}
 		}
 		fallthrough
 	case reflect.Array:
@@ -122,7 +134,7 @@ func between(r *rule) string {
 
 // short writes a number as briefly as it can be read back.
 func short(f float64) string {
-	if math.Abs(f) < 1e15 && f == math.Trunc(f) {
+	if math.Abs(f) < 1e16 && f == math.Trunc(f) {
 		return strconv.FormatFloat(f, 'f', -1, 64)
 	}
 	return strconv.FormatFloat(f, 'g', -1, 64)
@@ -158,29 +170,29 @@ func (r *rule) mustBe(got string) string {
 func (c checker) robot() {
 	b := &c.s.Robot
 	if c.sound("robot.track_m", "robot.radius_m") && b.Track > 2*b.Radius {
-		c.say("robot.track_m", "robot.track_m (%.2f m) is wider than the hull (%.2f m across)", b.Track, 2*b.Radius)
+		c.clash("robot.track_m", "robot.radius_m", "robot.track_m (%.2f m) is wider than the hull (%.2f m across)", b.Track, 2*b.Radius)
 	}
 	if c.sound("ring.mount_m", "robot.radius_m") && c.s.Ring.Mount > b.Radius {
-		c.say("ring.mount_m", "ring.mount_m (%.2f m) is beyond the hull (radius %.2f m)", c.s.Ring.Mount, b.Radius)
+		c.clash("ring.mount_m", "robot.radius_m", "ring.mount_m (%.2f m) is beyond the hull (radius %.2f m)", c.s.Ring.Mount, b.Radius)
 	}
 }
 
 func (c checker) ring() {
 	g := &c.s.Ring
 	if c.sound("ring.range_min_m", "ring.range_max_m") && g.RangeMin >= g.RangeMax {
-		c.say("ring.range_min_m", "ring.range_min_m (%s m) must be below ring.range_max_m (%s m)", short(g.RangeMin), short(g.RangeMax))
+		c.clash("ring.range_min_m", "ring.range_max_m", "ring.range_min_m (%s m) must be below ring.range_max_m (%s m)", short(g.RangeMin), short(g.RangeMax))
 	}
 	if c.sound("ring.step_m", "ring.range_max_m") && g.Step > g.RangeMax {
-		c.say("ring.step_m", "ring.step_m (%s m) is longer than the longest range (%s m)", short(g.Step), short(g.RangeMax))
+		c.clash("ring.step_m", "ring.range_max_m", "ring.step_m (%s m) is longer than the longest range (%s m)", short(g.Step), short(g.RangeMax))
 	}
 	if c.sound("ring.dropout", "ring.random") && g.Dropout+g.Random > 1 {
-		c.say("ring.random", "ring.dropout and ring.random are probabilities that together may not exceed 1; they add up to %s", short(g.Dropout+g.Random))
+		c.clash("ring.random", "ring.dropout", "ring.dropout and ring.random are probabilities that together may not exceed 1; they add up to %s", short(g.Dropout+g.Random))
 	}
 	if n := len(g.Bearings); n > 0 && c.sound("ring.beams", "ring.bearings_deg") && g.Beams != n {
-		c.say("ring.beams", "ring.beams is %d, but ring.bearings_deg lists %d; leave one of them out", g.Beams, n)
+		c.clash("ring.beams", "ring.bearings_deg", "ring.beams is %d, but ring.bearings_deg lists %d; leave one of them out", g.Beams, n)
 	}
 	if c.sound("ring.beams", "ring.cone_rays") && g.Beams*g.ConeRays > MaxRays {
-		c.say("ring.cone_rays", "%d beams of %d rays make %d rays; at most %d are allowed", g.Beams, g.ConeRays, g.Beams*g.ConeRays, MaxRays)
+		c.clash("ring.cone_rays", "ring.beams", "%d beams of %d rays make %d rays; at most %d are allowed", g.Beams, g.ConeRays, g.Beams*g.ConeRays, MaxRays)
 	}
 }
 
@@ -197,7 +209,7 @@ func (c checker) timing() {
 			return
 		}
 		if _, ok := ticks(time, tick); !ok {
-			c.say(path, "%s (%s s) must be a whole multiple of timing.tick_s (%s s)", path, short(time), short(tick))
+			c.clash(path, "timing.tick_s", "%s (%s s) must be a whole multiple of timing.tick_s (%s s)", path, short(time), short(tick))
 		}
 	}
 	whole("timing.decide_every_s", c.s.Timing.DecideEvery)

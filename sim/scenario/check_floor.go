@@ -2,9 +2,11 @@ package scenario
 
 import (
 	"fmt"
-	"leeway/sim/geom"
 	"math"
 	"strings"
+
+	"leeway/sim/floor"
+	"leeway/sim/geom"
 )
 
 // tiny is the length (m) below which a piece of wall counts as nothing.
@@ -167,6 +169,18 @@ func (s *Scenario) overlaps(r *report) []string {
 			add(fmt.Sprintf("solid %q", o.ID), geom.Polygon(vecs(o.Corners)).Distance(at))
 		} else {
 			add(fmt.Sprintf("solid %q", o.ID), geom.DistanceToDisc(at, geom.Disc{Center: vec(o.Center), Radius: o.Radius}))
+		}
+	}
+	for i := range s.Floor.Movers {
+		if !r.sound(fmt.Sprintf("floor.movers[%d]", i)) {
+			continue
+		}
+		m, err := floor.NewMap(floor.Config{Movers: []floor.Mover{s.Floor.Movers[i].config()}}, hull)
+		if err != nil {
+			continue // what is wrong with it has been said
+		}
+		if near, ok := m.NewWorld().Nearest(at, hull); ok {
+			add(fmt.Sprintf("mover %q", s.Floor.Movers[i].ID), near.Distance)
 		}
 	}
 	return out

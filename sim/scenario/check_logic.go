@@ -12,12 +12,7 @@ func (c checker) logic() {
 		return
 	}
 	if l.Kind == "table" {
-		if c.sound("logic.modes") {
-			c.names()
-		}
-		if !c.sound("logic") {
-			return
-		}
+		c.names()
 	}
 	if l.Kind == "default" || !c.sound("logic", "robot.radius_m", "robot.speed_m_s", "goal.radius_m") {
 		return
@@ -36,6 +31,9 @@ func (c checker) names() {
 	first := map[string]int{}
 	for i, m := range l.Modes {
 		at := fmt.Sprintf("logic.modes[%d].name", i)
+		if !c.sound(at) {
+			return // nothing can be said of names that refer to modes
+		}
 		switch was, taken := first[m.Name]; {
 		case m.Name == anyMode:
 			c.say(at, "%s: %q stands for every mode; call it something else", at, anyMode)

@@ -90,13 +90,17 @@ func (s *Scenario) floorConfig() floor.Config {
 			wall(b)
 		}
 	}
-	for _, m := range s.Floor.Movers {
-		c.Movers = append(c.Movers, floor.Mover{
-			ID: m.ID, Radius: m.Radius, Half: geom.Vec{X: m.Box[0] / 2, Y: m.Box[1] / 2}, Heading: radians(m.Heading),
-			Route: vecs(m.Route), Loop: m.Loop, Speed: m.Speed, Pause: m.Pause, Offset: m.Offset,
-		})
+	for i := range s.Floor.Movers {
+		c.Movers = append(c.Movers, s.Floor.Movers[i].config())
 	}
 	return c
+}
+
+func (m *Mover) config() floor.Mover {
+	return floor.Mover{
+		ID: m.ID, Radius: m.Radius, Half: geom.Vec{X: m.Box[0] / 2, Y: m.Box[1] / 2}, Heading: radians(m.Heading),
+		Route: vecs(m.Route), Loop: m.Loop, Speed: m.Speed, Pause: m.Pause, Offset: m.Offset,
+	}
 }
 
 func (s *Scenario) ringConfig() ring.Config {

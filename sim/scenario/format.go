@@ -52,7 +52,7 @@ type Scenario struct {
 	Timing Timing `json:"timing"`
 	// Ideal lists what is idealised, each a switch of its own.
 	Ideal []string `json:"ideal" jsonschema:"uniqueItems=true"`
-	// OnContact says what a touch does to the run.
+	// What a touch does to the run.
 	OnContact string `json:"on_contact"`
 	// Edits that people made while the run went on, in order of tick.
 	Edits []Edit `json:"edits"`
@@ -79,7 +79,7 @@ type Floor struct {
 
 // Wall is a chain of thin straight pieces, left open.
 type Wall struct {
-	// ID of the wall, its own among walls, solids and movers; w1, w2, … when left out.
+	// Id of the wall, its own among walls, solids and movers; w1, w2, … when left out.
 	ID string `json:"id"`
 	// Points that the wall joins in order.
 	Points []Point `json:"points_m" jsonschema:"required"`
@@ -87,7 +87,7 @@ type Wall struct {
 
 // Solid is a filled thing: a polygon (corners_m) or a disc (center_m and radius_m).
 type Solid struct {
-	// ID of the solid, its own among walls, solids and movers; s1, s2, … when left out.
+	// Id of the solid, its own among walls, solids and movers; s1, s2, … when left out.
 	ID string `json:"id"`
 	// Corners of a simple polygon, convex or not, in either winding; the last is joined to the first.
 	Corners []Point `json:"corners_m" form:"polygon" jsonschema:"required"`
@@ -99,7 +99,7 @@ type Solid struct {
 
 // Mover is a box (box_m) or a disc (radius_m) that follows a route by itself, whatever is in its way.
 type Mover struct {
-	// ID of the mover, its own among walls, solids and movers; m1, m2, … when left out.
+	// Id of the mover, its own among walls, solids and movers; m1, m2, … when left out.
 	ID string `json:"id"`
 	// Box is its length and width.
 	Box [2]float64 `json:"box_m" form:"box" jsonschema:"required"`
@@ -127,45 +127,45 @@ type Robot struct {
 	Motion string `json:"motion"`
 	// Speed that it drives at where nothing holds it back.
 	Speed float64 `json:"speed_m_s"`
-	// WheelRadius as the robot believes it to be.
+	// Wheel radius as the robot believes it to be.
 	WheelRadius float64 `json:"wheel_radius_m"`
-	// Track is the distance from wheel to wheel as the robot believes it to be.
+	// Distance from wheel to wheel as the robot believes it to be.
 	Track float64 `json:"track_m"`
-	// WheelSpeedMax is the fastest a wheel turns; 0 for no limit.
+	// The fastest a wheel turns; 0 for no limit.
 	WheelSpeedMax float64 `json:"wheel_speed_max_rad_s"`
-	// WheelAccelMax is the hardest a wheel speeds up or slows down; 0 for no limit.
+	// The hardest a wheel speeds up or slows down; 0 for no limit.
 	WheelAccelMax float64 `json:"wheel_accel_max_rad_s2"`
-	// WheelLag is the time constant with which wheel speeds follow their commands.
+	// Wheel lag: the time constant with which wheel speeds follow their commands.
 	WheelLag float64 `json:"wheel_lag_s"`
-	// WheelDeadTime passes before a command has any effect.
+	// Dead time that passes before a command has any effect.
 	WheelDeadTime float64 `json:"wheel_dead_time_s"`
 	// Position keeping: dead reckoning from the wheels, or the true pose.
 	Position string `json:"position"`
-	// EncoderCounts of one turn of a wheel; 0 for perfect encoders.
+	// Encoder counts of one turn of a wheel; 0 for perfect encoders.
 	EncoderCounts int `json:"encoder_counts_per_turn"`
-	// RightWheelScale is the true radius of the right wheel over the believed one.
+	// The true radius of the right wheel over the believed one.
 	RightWheelScale float64 `json:"right_wheel_scale"`
-	// LeftWheelScale is the true radius of the left wheel over the believed one.
+	// The true radius of the left wheel over the believed one.
 	LeftWheelScale float64 `json:"left_wheel_scale"`
-	// TrackScale is the true track over the believed one.
+	// The true track over the believed one.
 	TrackScale float64 `json:"track_scale"`
 	// Slip is the variance of a wheel's travel for each metre it turns (m² per m).
 	Slip float64 `json:"slip_m"`
-	// FixEvery is the time between position fixes; 0 for none.
+	// Time between position fixes; 0 for none.
 	FixEvery float64 `json:"fix_every_s"`
-	// FixNoise is the standard deviation of a fix in x and in y.
+	// Standard deviation of a fix in x and in y.
 	FixNoise float64 `json:"fix_noise_m"`
-	// FixTurnNoise is the standard deviation of a fix in heading.
+	// Standard deviation of a fix in heading.
 	FixTurnNoise float64 `json:"fix_noise_deg"`
 	// Steering rule, from the wanted velocity to turning and driving.
 	Steering string `json:"steering"`
-	// SteeringGain of the heading servo.
+	// Gain of the heading servo.
 	SteeringGain float64 `json:"steering_gain_per_s"`
-	// SpeedLaw says how fast the heading servo drives while it turns.
+	// Says how fast the heading servo drives while it turns.
 	SpeedLaw string `json:"speed_law"`
-	// TurnBeyond is the heading error beyond which stop-and-turn stops.
+	// The heading error beyond which stop-and-turn stops.
 	TurnBeyond float64 `json:"turn_beyond_deg"`
-	// LookAhead is how far ahead of the axle the look-ahead point lies.
+	// How far ahead of the axle the look-ahead point lies.
 	LookAhead float64 `json:"look_ahead_m"`
 	// Saturation says what gives way when a wheel would have to turn too fast.
 	Saturation string `json:"saturation"`
@@ -177,29 +177,29 @@ type Ring struct {
 	Beams int `json:"beams"`
 	// Bearings of the beams, counter-clockwise from dead ahead, when they are not spread evenly.
 	Bearings []float64 `json:"bearings_deg"`
-	// Mount is the distance of the sensors from the hull's centre.
+	// Distance of the sensors from the hull's centre.
 	Mount float64 `json:"mount_m"`
-	// RangeMin is the shortest distance that a sensor measures.
+	// The shortest distance that a sensor measures.
 	RangeMin float64 `json:"range_min_m"`
-	// RangeMax is the longest distance that a sensor measures.
+	// The longest distance that a sensor measures.
 	RangeMax float64 `json:"range_max_m"`
-	// Noise is the standard deviation of a reading at no distance.
+	// Standard deviation of a reading at no distance.
 	Noise float64 `json:"noise_m"`
-	// NoisePerM is what each metre of distance adds to the standard deviation.
+	// What each metre of distance adds to the standard deviation.
 	NoisePerM float64 `json:"noise_per_m"`
-	// Dropout is the probability that an echo is lost.
+	// Probability that an echo is lost.
 	Dropout float64 `json:"dropout"`
-	// Random is the probability of a reading that has nothing to do with the floor.
+	// Probability of a reading that has nothing to do with the floor.
 	Random float64 `json:"random"`
 	// Step of which readings are whole multiples; 0 for none.
 	Step float64 `json:"step_m"`
 	// Period between two readings of a beam, a whole number of ticks.
 	Period float64 `json:"period_s"`
-	// InTurn beams fire one after the other, spread over the period; else all at once.
+	// When true, beams fire one after the other, spread over the period; else all at once.
 	InTurn bool `json:"in_turn"`
-	// Cone is the opening angle of a beam; 0 for a thin ray.
+	// Opening angle of a beam; 0 for a thin ray.
 	Cone float64 `json:"cone_deg"`
-	// ConeRays is the number of rays that make up a cone; the nearest echo counts.
+	// Number of rays that make up a cone; the nearest echo counts.
 	ConeRays int `json:"cone_rays"`
 }
 
@@ -207,17 +207,17 @@ type Ring struct {
 type Logic struct {
 	// Kind of logic: the default one, or a table of one's own.
 	Kind string `json:"kind"`
-	// Notice is how near something on the way to the goal must be to be followed; left out, it follows hull and speed.
+	// How near something on the way to the goal must be to be followed; left out, it follows hull and speed.
 	Notice *float64 `json:"notice_m,omitempty" form:"default"`
-	// StandOff is the gap to a followed wall; left out, it follows hull and speed.
+	// Gap to a followed wall; left out, it follows hull and speed.
 	StandOff *float64 `json:"stand_off_m,omitempty" form:"default"`
-	// Safe is the gap below which avoidance takes over; left out, it follows hull and speed.
+	// Gap below which avoidance takes over; left out, it follows hull and speed.
 	Safe *float64 `json:"safe_m,omitempty" form:"default"`
-	// Band is how far beyond the safe gap avoidance lets go; left out, it follows hull and speed.
+	// How far beyond the safe gap avoidance lets go; left out, it follows hull and speed.
 	Band *float64 `json:"band_m,omitempty" form:"default"`
-	// Gain is how much nearer to the goal a wall must be left than it was met; left out, it follows hull and speed.
+	// How much nearer to the goal a wall must be left than it was met; left out, it follows hull and speed.
 	Gain *float64 `json:"gain_m,omitempty" form:"default"`
-	// MinTime in a mode before it is left for another way; left out, it follows hull and speed.
+	// Least time in a mode before it is left for another way; left out, it follows hull and speed.
 	MinTime *float64 `json:"min_time_s,omitempty" form:"default"`
 	// Side on which a wall is kept.
 	Side string `json:"side" form:"default"`
@@ -243,11 +243,11 @@ type Mode struct {
 	Ending string `json:"ending"`
 	// Side on which a wall is kept.
 	Side string `json:"side"`
-	// StandOff is the gap to a followed wall.
+	// Gap to a followed wall.
 	StandOff float64 `json:"stand_off_m"`
-	// GoalGain slows the robot down near the goal: v = gain × distance, up to its speed.
+	// Slows the robot down near the goal: v = gain × distance, up to its speed.
 	GoalGain float64 `json:"goal_gain_per_s"`
-	// SpeedShare is the share of the robot's speed used in the mode.
+	// Share of the robot's speed used in the mode.
 	SpeedShare float64 `json:"speed_share"`
 }
 
@@ -259,7 +259,7 @@ type Transition struct {
 	To string `json:"to" jsonschema:"required"`
 	// When lists the conditions, all of which must hold.
 	When []Condition `json:"when" jsonschema:"required"`
-	// MinTime in the mode before the transition may fire.
+	// Least time in the mode before the transition may fire.
 	MinTime float64 `json:"min_time_s"`
 	// Hold is how long the conditions must have held.
 	Hold float64 `json:"hold_s"`
@@ -303,19 +303,19 @@ type Goal struct {
 
 // Asked is what is asked of a run.
 type Asked struct {
-	// Within is the time in which the robot must arrive; the run ends there.
+	// Time in which the robot must arrive; the run ends there.
 	Within float64 `json:"within_s"`
-	// Leeway is the least gap that must be kept between hull and anything solid.
+	// Least gap that must be kept between hull and anything solid.
 	Leeway float64 `json:"leeway_m"`
-	// Switches is the most changes of mode; -1 when nothing is asked of them.
+	// Most changes of mode; -1 when nothing is asked of them.
 	Switches int `json:"switches"`
 }
 
 // Timing is how the run is cut into ticks.
 type Timing struct {
-	// Tick is the step of the physics.
+	// Step of the physics.
 	Tick float64 `json:"tick_s"`
-	// DecideEvery is the time between two decisions of the logic, a whole number of ticks.
+	// Time between two decisions of the logic, a whole number of ticks.
 	DecideEvery float64 `json:"decide_every_s"`
 }
 
@@ -325,7 +325,7 @@ type Edit struct {
 	Tick int64 `json:"tick" jsonschema:"required"`
 	// What was changed.
 	What string `json:"what" jsonschema:"required"`
-	// ID of the wall, solid or mover.
+	// Id of the wall, solid or mover.
 	ID string `json:"id" form:"solid,mover" jsonschema:"required"`
 	// To is where its anchor went: the goal's or hull's centre, a wall's first point, a solid's first corner or centre, the first point of a mover's route.
 	To Point `json:"to_m" form:"goal,robot,solid,mover" jsonschema:"required"`

@@ -42,8 +42,10 @@ func problemf(format string, args ...any) Problems {
 // finding is a problem on its way into a report.
 type finding struct {
 	Problem
-	at     int  // byte offset in the file; −1: not known yet
-	beyond bool // a JSON Schema cannot say it
+	at     int      // byte offset in the file; −1: not known yet
+	found  bool     // at is that of the value itself, not of what it is missing from
+	clash  []string // what it does not go with: where to look when the value is not in the file
+	beyond bool     // a JSON Schema cannot say it
 }
 
 // keep bounds how many findings are held; what is beyond it is only counted.
@@ -61,7 +63,7 @@ func (r *report) add(path string, at int, beyond bool, text string) {
 	if r.full() {
 		return
 	}
-	r.list = append(r.list, finding{Problem{Path: path, Text: text}, at, beyond})
+	r.list = append(r.list, finding{Problem: Problem{Path: path, Text: text}, at: at, found: at >= 0, beyond: beyond})
 	r.distrust(path)
 }
 

@@ -23,8 +23,11 @@ func Parse(data []byte) (*Scenario, error) {
 	}
 	s.check(&r)
 	for i := range r.list {
-		if f := &r.list[i]; f.at < 0 {
-			f.at = tree.locate(f.Path)
+		f := &r.list[i]
+		for _, p := range append([]string{f.Path}, f.clash...) {
+			if f.at < 0 || !f.found {
+				f.at, f.found = tree.locate(p)
+			}
 		}
 	}
 	if p := r.problems(data); p != nil {
@@ -60,10 +63,10 @@ func readVersion(tree *node, r *report) *Scenario {
 		}
 	}
 	s := defaults()
-	if ring := tree.get("ring"); ring != nil && ring.get("bearings_deg") != nil && ring.get("beams") == nil {
-		s.Ring.Beams = 0 // as many as there are bearings
-	}
 	reader{r}.read(root(), tree, reflect.ValueOf(&s).Elem(), nil)
+	if ring := tree.get("ring"); ring != nil && ring.get("beams") == nil && len(s.Ring.Bearings) > 0 {
+		s.Ring.Beams = len(s.Ring.Bearings)
+	}
 	s.normalise()
 	return &s
 }
@@ -84,7 +87,7 @@ func (r reader) say(p *path, n *node, beyond bool, format string, args ...any) {
 
 func (r reader) read(s *spec, n *node, v reflect.Value, p *path) {
 	if n.kind == bad {
-		r.say(p, n, true, n.text)
+		r.say(p, n, false, n.text)
 		return
 	}
 	if want := kindFor(v.Kind()); n.kind != want && v.Kind() != reflect.Pointer {
@@ -127,7 +130,7 @@ func (r reader) read(s *spec, n *node, v reflect.Value, p *path) {
 		if f != math.Trunc(f) {
 			r.say(p, n, false, "%s must be a whole number; it is %s", shorten(n.text))
 		} else if math.Abs(f) > maxSeed {
-			r.say(p, n, false, "%s must be between %s; it is %s", between(s.rule), shorten(n.text))
+			r.say(p, n, false, "%s must be %s; it is %s", between(s.rule), shorten(n.text))
 		} else {
 			v.SetInt(int64(f))
 		}
@@ -259,9 +262,9 @@ func (r reader) named(s *spec, n *node, p *path) (string, bool) {
 func describeForm(s *spec, form string) string {
 	switch s.typ {
 	case reflect.TypeFor[Edit]():
-		return "an edit of what is " + form
+		return `an edit with "what": ` + strconv.Quote(form)
 	case reflect.TypeFor[Logic]():
-		return "a logic of kind " + form
+		return `a logic with "kind": ` + strconv.Quote(form)
 	case reflect.TypeFor[Mover]():
 		return "a round mover (it has radius_m)"
 	}
@@ -285,9 +288,11 @@ func suggestField(s *spec, p *path, name string) string {
 	if best := nearest(name, names); best != "" {
 		return "; did you mean " + best + "?"
 	}
-	for _, f := range rules() {
-		if f.Path == name || strings.HasSuffix(f.Path, "."+name) {
-			return "; " + name[strings.LastIndex(name, ".")+1:] + " belongs in " + parent(f.Path)
+	if p == nil || p.up == nil { // of the file or of a section
+		for _, f := range rules() {
+			if f.edit && strings.HasSuffix(f.Path, "."+name) {
+				return "; " + name + " belongs in " + parent(f.Path)
+			}
 		}
 	}
 	return ""
@@ -305,8 +310,8 @@ func nearest(written string, names []string) string {
 	best, least := "", 3
 	for _, n := range names {
 		m := plain(n)
-		d := edits(w, m)
-		if d > len(m)/3 && !(len(w) >= 4 && strings.HasPrefix(m, w)) {
+		d := slips(w, m)
+		if d > max(1, len(m)/3) && !(len(w) >= 4 && strings.HasPrefix(m, w)) {
 			continue
 		}
 		if strings.HasPrefix(m, w) { // the unit was left out
@@ -319,29 +324,33 @@ func nearest(written string, names []string) string {
 	return best
 }
 
-// edits is the Levenshtein distance of two short texts.
-func edits(a, b string) int {
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
+// slips counts the letters to insert, delete, replace or swap with their neighbour to get from a to b
+// (optimal string alignment).
+func slips(a, b string) int {
+	rows := [3][]int{make([]int, len(b)+1), make([]int, len(b)+1), make([]int, len(b)+1)}
+	before, last, now := rows[0], rows[1], rows[2]
+	for j := range last {
+		last[j] = j
 	}
-	for i := range len(a) {
-		diagonal := row[0]
-		row[0] = i + 1
-		for j := range len(b) {
-			cost := diagonal
-			if a[i] != b[j] {
-				cost++
+	for i := 1; i <= len(a); i++ {
+		now[0] = i
+		for j := 1; j <= len(b); j++ {
+			cost := 1
+			if a[i-1] == b[j-1] {
+				cost = 0
 			}
-			diagonal = row[j+1]
-			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
+			now[j] = min(last[j]+1, now[j-1]+1, last[j-1]+cost)
+			if i > 1 && j > 1 && a[i-1] == b[j-2] && a[i-2] == b[j-1] {
+				now[j] = min(now[j], before[j-2]+1)
+			}
 		}
+		before, last, now = last, now, before
 	}
-	return row[len(b)]
+	return last[len(b)]
 }
 
-// locate returns the byte offset of the value at a path, or of the deepest thing on the way to it.
-func (n *node) locate(path string) int {
+// locate returns the byte offset of the value at a path and true, or that of the deepest thing on the way to it and false.
+func (n *node) locate(path string) (offset int, found bool) {
 	at := n
 	for _, step := range strings.FieldsFunc(path, func(r rune) bool { return r == '.' || r == '[' }) {
 		var next *node
@@ -353,11 +362,11 @@ func (n *node) locate(path string) int {
 			next = at.get(step)
 		}
 		if next == nil {
-			break
+			return int(at.at), false
 		}
 		at = next
 	}
-	return int(at.at)
+	return int(at.at), true
 }
 
 // normalise gives names to what has none and puts what has no order of its own in the canonical one.
@@ -381,9 +390,6 @@ func (s *Scenario) normalise() {
 	number("w", ids[:walls])
 	number("s", ids[walls:walls+solids])
 	number("m", ids[walls+solids:])
-	if len(s.Ring.Bearings) > 0 && s.Ring.Beams == 0 {
-		s.Ring.Beams = len(s.Ring.Bearings)
-	}
 	order := ruleAt()["ideal[]"].Options
 	slices.SortStableFunc(s.Ideal, func(a, b string) int {
 		place := func(v string) int { return slices.IndexFunc(order, func(o Option) bool { return o.Value == v }) }

@@ -1,9 +1,10 @@
 package scenario
 
 import (
-	"leeway/sim"
 	"slices"
 	"sync"
+
+	"leeway/sim"
 )
 
 // Field describes a number or a choice of the file that a person can change by itself.
@@ -48,7 +49,7 @@ func choice(path, label string, options ...Option) rule {
 	return rule{Field: Field{Path: path, Label: label, Options: options}, edit: true}
 }
 
-func flag(path, label, no, yes string) rule {
+func onOff(path, label, no, yes string) rule {
 	return choice(path, label, Option{"false", no}, Option{"true", yes})
 }
 
@@ -85,7 +86,7 @@ var rules = sync.OnceValue(func() []rule {
 
 		num("floor.width_m", "width of the floor", "m", 1, maxSide, 0.5, 2),
 		num("floor.height_m", "height of the floor", "m", 1, maxSide, 0.5, 2),
-		flag("floor.enclosed", "border", "open", "walled"),
+		onOff("floor.enclosed", "border", "open", "walled"),
 		count("floor.walls", "walls", 0, MaxPieces),
 		text("floor.walls[].id", "id", maxID, true),
 		count("floor.walls[].points_m", "points", 2, MaxWallLen),
@@ -144,7 +145,7 @@ var rules = sync.OnceValue(func() []rule {
 		num("ring.random", "random readings", "", 0, 1, 0.005, 3),
 		num("ring.step_m", "step of a reading", "m", 0, 1, 0.001, 3),
 		num("ring.period_s", "time between readings", "s", 0.0005, 10, 0.005, 3),
-		flag("ring.in_turn", "firing", "all at once", "in turn"),
+		onOff("ring.in_turn", "firing", "all at once", "in turn"),
 		num("ring.cone_deg", "opening angle of a beam", "°", 0, 120, 1, 1),
 		num("ring.cone_rays", "rays in a cone", "", 1, 31, 1, 0),
 
