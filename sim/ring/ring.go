@@ -149,7 +149,12 @@ func (r *Ring) Sense(tick int64, pose geom.Pose, w World) {
 	k := r.cfg.raysPerBeam()
 	rays := r.rays[:0]
 	for _, i := range due {
-		at := pose.Pos.AddScaled(r.cfg.Mount, r.scan.Dir[i].Rotate(sin, cos))
+		bearing := r.scan.Dir[i].Rotate(sin, cos)
+		at := pose.Pos.AddScaled(r.cfg.Mount, bearing)
+		if k == 1 {
+			rays = append(rays, floor.Ray{Origin: at, Dir: bearing})
+			continue
+		}
 		for _, d := range r.dirs[i*k : i*k+k] {
 			rays = append(rays, floor.Ray{Origin: at, Dir: d.Rotate(sin, cos)})
 		}
@@ -159,8 +164,8 @@ func (r *Ring) Sense(tick int64, pose geom.Pose, w World) {
 
 	for n, i := range due {
 		distance := cast[n*k]
-		for _, d := range cast[n*k+1 : n*k+k] {
-			distance = min(distance, d)
+		for j := 1; j < k; j++ {
+			distance = min(distance, cast[n*k+j])
 		}
 		r.scan.Range[i], r.scan.Hit[i] = r.read(&r.beams[i], distance)
 		r.scan.Tick[i] = tick
@@ -214,10 +219,20 @@ func (r *Ring) read(s *sources, distance float64) (z float64, hit bool) {
 	if !hit {
 		return c.Max, false
 	}
-	z = max(z, c.Min)
-	if c.Quantum > 0 {
+	if z < c.Min {
+		z = c.Min
+	}
+	if c.Quantum > 0 { // (the built-in min and max mind NaN, which costs more than all else here)
 		k := math.Floor(z/c.Quantum + 0.5)
-		z = min(float64(c.Quantum*min(max(k, r.kLow), r.kHigh)), c.Max)
+		if k < r.kLow {
+			k = r.kLow
+		}
+		if k > r.kHigh {
+			k = r.kHigh
+		}
+		if z = c.Quantum * k; z > c.Max { // by its rounding
+			z = c.Max
+		}
 	}
 	return z, true
 }
