@@ -256,6 +256,7 @@ func (c checker) ids() {
 
 func (c checker) edits() {
 	last := int64(0)
+	solids := c.s.solidIndexes()
 	for i, e := range c.s.Edits {
 		at := fmt.Sprintf("edits[%d]", i)
 		if !c.sound(at) {
@@ -271,10 +272,10 @@ func (c checker) edits() {
 				c.say(at+".to_m", "%s.to_m (%s) is not on the floor", at, c.s.offFloor(e.To[0], e.To[1]))
 			}
 		case "solid":
-			if _, fixed, ok := c.s.SolidIndex(e.ID); !ok {
-				c.say(at+".id", "%s.id: there is no wall or solid %q", at, e.ID)
-			} else if fixed {
+			if strings.HasPrefix(e.ID, borderPrefix) {
 				c.say(at+".id", "%s.id: the border cannot be moved", at)
+			} else if _, ok := solids[e.ID]; !ok {
+				c.say(at+".id", "%s.id: there is no wall or solid %q", at, e.ID)
 			}
 		case "mover":
 			if _, ok := c.s.MoverIndex(e.ID); !ok {

@@ -47,6 +47,7 @@ func (s *Scenario) Config() (sim.Config, error) {
 	for _, name := range s.Ideal {
 		c.Ideal |= 1 << place("ideal[]", name)
 	}
+	solids := s.solidIndexes()
 	for _, e := range s.Edits {
 		f := sim.Edit{Tick: e.Tick, Pos: vec(e.To)}
 		switch e.What {
@@ -56,7 +57,7 @@ func (s *Scenario) Config() (sim.Config, error) {
 			f.Kind = sim.MoveRobot
 		case "solid":
 			f.Kind = sim.MoveSolid
-			f.Index, _, _ = s.SolidIndex(e.ID)
+			f.Index = solids[e.ID]
 		case "mover":
 			f.Kind = sim.MoveMover
 			f.Index, _ = s.MoverIndex(e.ID)

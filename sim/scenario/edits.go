@@ -50,13 +50,14 @@ func (s *Scenario) WithEdits(edits []sim.Edit) *Scenario {
 func (s *Scenario) Folded() *Scenario {
 	c := s.Clone()
 	c.Edits = nil
+	solids := c.solidIndexes()
 	for _, e := range s.Edits {
 		switch e.What {
 		case "goal":
 			c.Goal.X, c.Goal.Y = e.To[0], e.To[1]
 		case "solid":
-			i, fixed, ok := c.SolidIndex(e.ID)
-			if !ok || fixed {
+			i, ok := solids[e.ID]
+			if !ok {
 				continue
 			}
 			if walls := len(c.Floor.Walls); i < walls {
@@ -101,6 +102,18 @@ func (s *Scenario) border() []Wall {
 		{borderPrefix + "north", []Point{ne, nw}},
 		{borderPrefix + "west", []Point{nw, sw}},
 	}
+}
+
+// solidIndexes returns SolidIndex of every wall and solid at once, without the border.
+func (s *Scenario) solidIndexes() map[string]int {
+	m := make(map[string]int, len(s.Floor.Walls)+len(s.Floor.Solids))
+	for i, w := range s.Floor.Walls {
+		m[w.ID] = i
+	}
+	for i, o := range s.Floor.Solids {
+		m[o.ID] = len(s.Floor.Walls) + i
+	}
+	return m
 }
 
 // SolidIndex returns the place in sim's floor.Config of the wall or solid with this id: walls
