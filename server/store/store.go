@@ -32,7 +32,7 @@ type Session struct {
 	Tick     int64
 	Playing  bool
 	Speed    float64 // 0: as fast as it goes
-	ByHand   bool    // a person has changed something since it was opened
+	ByHand   bool    // a person has changed something since the run began
 	Updated  time.Time
 }
 

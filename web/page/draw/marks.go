@@ -118,6 +118,7 @@ func (c *canvas) way() {
 	}
 	c.s(`<g fill="none" stroke-linejoin="round" stroke-linecap="round">`)
 	for _, l := range c.f.Way {
+		l.Points = c.thin(l.Points)
 		c.s(`<polyline`)
 		c.points(l.Points)
 		c.paint("stroke", c.o.Paint.look(l.Look))
@@ -138,6 +139,23 @@ func (c *canvas) way() {
 		}
 	}
 	c.s(`</g>`)
+}
+
+// thin leaves out points so near the one before that nobody could see them: a
+// way has thousands.
+func (c *canvas) thin(ps []Point) []Point {
+	const near = 1.5 // drawing units
+	if len(ps) < 3 {
+		return ps
+	}
+	kept := ps[:1:1]
+	for _, p := range ps[1 : len(ps)-1] {
+		last := kept[len(kept)-1]
+		if math.Hypot(p.X-last.X, p.Y-last.Y)*c.scale >= near {
+			kept = append(kept, p)
+		}
+	}
+	return append(kept, ps[len(ps)-1])
 }
 
 // ends draws the start, as a hull with its heading, and the goal.

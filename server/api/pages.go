@@ -1,0 +1,140 @@
+package api
+
+import (
+	"bytes"
+	"context"
+	"encoding/json"
+	"fmt"
+	"io"
+	"net/http"
+	"strconv"
+	"sync"
+
+	"github.com/a-h/templ"
+	"github.com/go-chi/chi/v5"
+
+	"leeway/scenarios"
+	"leeway/server/live"
+	"leeway/server/watch"
+	"leeway/sim/scenario"
+	"leeway/web/page"
+	"leeway/web/page/draw"
+)
+
+// page answers with a page. It is written to memory first, so that a fault in it
+// is not half a page.
+func (s *server) page(w http.ResponseWriter, r *http.Request, status int, c templ.Component) {
+	var b bytes.Buffer
+	if err := c.Render(r.Context(), &b); err != nil {
+		s.Log.Error("a page cannot be drawn", "path", r.URL.Path, "error", err)
+		http.Error(w, sentence(errInternal.Error()), http.StatusInternalServerError)
+		return
+	}
+	w.Header().Set("Content-Type", "text/html; charset=utf-8")
+	w.WriteHeader(status)
+	w.Write(b.Bytes())
+}
+
+func (s *server) start(w http.ResponseWriter, r *http.Request) {
+	cards, err := s.gallery.cards()
+	if err != nil {
+		s.fail(w, r, err)
+		return
+	}
+	s.page(w, r, http.StatusOK, page.Start(page.StartView{
+		Cards: cards, Accepted: fmt.Sprintf("%d MB", scenario.MaxBytes>>20),
+	}))
+}
+
+func (s *server) open(w http.ResponseWriter, r *http.Request) {
+	s.page(w, r, http.StatusOK, page.Open(page.OpenView{}))
+}
+
+func (s *server) bench(w http.ResponseWriter, r *http.Request) {
+	id := chi.URLParam(r, "session")
+	b, err := s.Lab.Bench(r.Context(), id)
+	if err != nil {
+		s.fail(w, r, err)
+		return
+	}
+	s.page(w, r, http.StatusOK, page.Bench(page.BenchView{
+		Session: id, Name: b.Name, Purpose: b.Purpose, Brief: briefView(b.Brief), Hello: json.RawMessage(b.Hello),
+	}))
+}
+
+// briefView writes the brief as it stands, for the page before its script runs.
+func briefView(parts []live.Part) []page.Part {
+	var out []page.Part
+	for _, p := range parts {
+		switch v := p.Value.(type) {
+		case float64:
+			decimals := -1
+			if p.Decimals != nil {
+				decimals = *p.Decimals
+			}
+			out = append(out, page.Part{Number: strconv.FormatFloat(v, 'f', decimals, 64), Unit: p.Unit})
+		case string:
+			label := v
+			for _, o := range p.Options {
+				if o.Value == v {
+					label = o.Label
+				}
+			}
+			out = append(out, page.Part{Choice: label})
+		default:
+			out = append(out, page.Part{Text: p.Text})
+		}
+	}
+	return out
+}
+
+// gallery is the cards of the shipped scenarios, each with a finished run drawn
+// on it. They are made once.
+type gallery struct {
+	once sync.Once
+	made []page.Card
+	err  error
+}
+
+// cardWidth is about how wide a card's drawing is on a page, in pixels.
+const cardWidth = 360
+
+func (g *gallery) cards() ([]page.Card, error) {
+	g.once.Do(func() {
+		all := scenarios.All()
+		g.made = make([]page.Card, len(all))
+		errs := make([]error, len(all))
+		var wg sync.WaitGroup
+		for i, e := range all {
+			wg.Go(func() { g.made[i], errs[i] = card(e) })
+		}
+		wg.Wait()
+		for _, err := range errs {
+			if err != nil {
+				g.err = err
+			}
+		}
+	})
+	return g.made, g.err
+}
+
+func card(e scenarios.Entry) (page.Card, error) {
+	sc, err := scenario.Parse(e.Data)
+	if err != nil {
+		return page.Card{}, fmt.Errorf("shipped scenario %s: %w", e.Slug, err)
+	}
+	f, err := watch.Finish(sc, nil)
+	if err != nil {
+		return page.Card{}, fmt.Errorf("shipped scenario %s: %w", e.Slug, err)
+	}
+	var b bytes.Buffer
+	if err := draw.SVG(&b, f.Picture(), draw.Options{Longest: cardWidth, Paint: draw.Paper}); err != nil {
+		return page.Card{}, err
+	}
+	svg := b.Bytes()
+	return page.Card{
+		Key: e.Slug, Name: sc.Name, Purpose: sc.Purpose,
+		Drawing: templ.ComponentFunc(func(_ context.Context, w io.Writer) error { _, err := w.Write(svg); return err }),
+		Outcome: f.Verdict(), Short: f.Short(),
+	}, nil
+}

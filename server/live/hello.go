@@ -1,0 +1,163 @@
+package live
+
+import (
+	"encoding/json"
+	"math"
+
+	"leeway/server/watch"
+	"leeway/sim/drive"
+	"leeway/sim/geom"
+)
+
+// hello is everything that a viewer needs to draw a session.
+type hello struct {
+	Kind        string       `json:"kind"`
+	Session     string       `json:"session"`
+	Name        string       `json:"name"`
+	Purpose     string       `json:"purpose"`
+	File        string       `json:"file"`
+	Tick        float64      `json:"tick_s"`
+	Playing     bool         `json:"playing"`
+	Speed       float64      `json:"speed"`
+	Viewers     int          `json:"viewers"`
+	IdleMinutes float64      `json:"idle_minutes"`
+	Bounds      [4]float64   `json:"bounds"`
+	Start       [3]float64   `json:"start"`
+	Goal        [3]float64   `json:"goal"`
+	Hull        float64      `json:"hull"`
+	Track       float64      `json:"track"`
+	Wheel       float64      `json:"wheel"`
+	Mount       float64      `json:"mount"`
+	RangeMax    float64      `json:"range_max"`
+	Bearings    []float64    `json:"bearings"`
+	Motion      string       `json:"motion"`
+	AllRound    bool         `json:"all_round"`
+	Modes       []helloMode  `json:"modes"`
+	Solids      []helloSolid `json:"solids"`
+	Movers      []helloMover `json:"movers"`
+	Brief       []Part       `json:"brief"`
+	Asked       helloAsked   `json:"asked"`
+
+	// Written by appendTrail and frame.append.
+	Trail json.RawMessage `json:"trail"`
+	Frame json.RawMessage `json:"frame"`
+}
+
+type helloMode struct {
+	Name string `json:"name"`
+	Look string `json:"look"`
+}
+
+type helloSolid struct {
+	ID     string       `json:"id"`
+	Shape  string       `json:"shape"`
+	Points [][2]float64 `json:"points"`
+	Radius float64      `json:"radius,omitempty"`
+	Fixed  bool         `json:"fixed,omitempty"`
+}
+
+type helloMover struct {
+	ID      string       `json:"id"`
+	Radius  float64      `json:"radius"`
+	Half    [2]float64   `json:"half"`
+	Heading float64      `json:"heading"`
+	Route   [][2]float64 `json:"route"`
+	Loop    bool         `json:"loop"`
+}
+
+type helloAsked struct {
+	Within   float64 `json:"within_s"`
+	Leeway   float64 `json:"leeway_m"`
+	Switches int     `json:"switches"` // −1: not asked
+}
+
+// hello returns the message. It holds the whole trail, and a frame that adds
+// nothing to it.
+func (s *Session) hello() []byte {
+	r, c := s.run, s.run.Config()
+	goal := s.place(thing{kind: goalKind})
+	h := hello{
+		Kind: "hello", Session: s.id, Name: s.sc.Name, Purpose: s.sc.Purpose, File: string(s.canonical()),
+		Tick: s.dt, Playing: s.playing, Speed: s.speed, Viewers: len(s.viewers),
+		IdleMinutes: s.lab.opt.Idle.Minutes(),
+		Bounds:      [4]float64{0, 0, s.sc.Floor.Width, s.sc.Floor.Height},
+		Start:       [3]float64{c.Start.Pos.X, c.Start.Pos.Y, c.Start.Theta},
+		Goal:        [3]float64{goal.X, goal.Y, c.GoalRadius},
+		Hull:        c.Hull, Track: c.Drive.Track, Wheel: c.Drive.WheelRadius,
+		Mount: c.Ring.Mount, RangeMax: c.Ring.Max, Bearings: rounded(r.Scan().Bearing),
+		Motion: motion(c.Drive.Model), AllRound: c.Ring.AllRound,
+		Modes: []helloMode{}, Solids: []helloSolid{}, Movers: []helloMover{},
+		Brief: s.brief(),
+		Asked: helloAsked{c.Asked.Within, c.Asked.Leeway, c.Asked.Switches},
+	}
+	for i := range c.Logic.Modes {
+		m := &c.Logic.Modes[i]
+		h.Modes = append(h.Modes, helloMode{m.Name, string(watch.Look(m))})
+	}
+	for i := range s.floor.Solids {
+		solid := r.World().SolidAt(i)
+		_, fixed, _ := s.sc.SolidIndex(solid.ID)
+		h.Solids = append(h.Solids, helloSolid{
+			solid.ID, string(watch.Shape(solid.Kind)), pairs(solid.Points, geom.Vec{}), tidy(solid.Radius), fixed,
+		})
+	}
+	for i := range s.floor.Movers {
+		m := &s.floor.Movers[i]
+		shift := s.place(thing{moverKind, i}).Sub(m.Route[0])
+		h.Movers = append(h.Movers, helloMover{
+			m.ID, tidy(m.Radius), [2]float64{tidy(m.Half.X), tidy(m.Half.Y)}, tidy(m.Heading), pairs(m.Route, shift), m.Loop,
+		})
+	}
+	spots := s.trail.Spots()
+	h.Trail = appendTrail(nil, spots)
+	told := s.told
+	s.told = len(spots)
+	s.fillFrame()
+	s.told = told
+	s.shown.Moved = s.shown.Moved[:0] // the solids above are where they are now
+	h.Frame = s.shown.append(nil)
+
+	b, err := json.Marshal(&h)
+	if err != nil {
+		// Every number has been checked or tidied.
+		s.lab.opt.Log.Error("a hello cannot be written", "session", s.id, "error", err)
+		return problem("session", "this session cannot be shown")
+	}
+	return b
+}
+
+func motion(m drive.Model) string {
+	switch m {
+	case drive.Point:
+		return "point"
+	case drive.Unicycle:
+		return "unicycle"
+	}
+	return "two_wheels"
+}
+
+// tidy rounds to what frames are written with, so that a thing is at the same
+// place in either.
+func tidy(v float64) float64 {
+	if !finite(v) {
+		return 0
+	}
+	return math.Round(v*places) / places
+}
+
+func rounded(vs []float64) []float64 {
+	out := make([]float64, len(vs))
+	for i, v := range vs {
+		out[i] = tidy(v)
+	}
+	return out
+}
+
+func pairs(vs []geom.Vec, shift geom.Vec) [][2]float64 {
+	out := make([][2]float64, len(vs))
+	for i, v := range vs {
+		v = v.Add(shift)
+		out[i] = [2]float64{tidy(v.X), tidy(v.Y)}
+	}
+	return out
+}
