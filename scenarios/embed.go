@@ -19,7 +19,17 @@ type Entry struct {
 // order is the order of display, from the plainest floor to the odd ones.
 var order = [...]string{
 	"crossing",
+	"wall",
 	"pocket",
+	"doors",
+	"office",
+	"pillars",
+	"cart",
+	"passage",
+	"sparse",
+	"lag",
+	"drift",
+	"walled",
 }
 
 // All returns the shipped scenarios in order of display.
