@@ -1,0 +1,150 @@
+package logic
+
+import (
+	"math"
+
+	"leeway/sim/geom"
+)
+
+// behave returns the velocity that the current mode wants.
+func (e *Engine) behave(in *Input) geom.Vec {
+	m := &e.l.Modes[e.mode]
+	top := in.Speed * m.share()
+	var u geom.Vec
+	switch m.Behaviour {
+	case GoalSeeking:
+		u = e.seek(in, m, top)
+	case WallFollowing:
+		u = e.followWall(in, m, top)
+	case Avoidance:
+		u = e.avoid(in, m, top)
+	}
+	return cap0(u, top)
+}
+
+// cap0 shortens u to the length top, and makes it zero should it not be finite.
+func cap0(u geom.Vec, top float64) geom.Vec {
+	n := u.Norm()
+	if !(n <= math.MaxFloat64) || top <= 0 {
+		return geom.Vec{}
+	}
+	if n > top {
+		u = u.Scale(top / n)
+		for u.Norm() > top {
+			u = u.Scale(1 - 1e-15)
+		}
+	}
+	return u
+}
+
+// headway is the time that lies between the robot and what it drives toward: the
+// speed is no more than the free way ahead divided by it, s.
+const headway = 0.5
+
+// creep is the least share of the speed at which a robot goes on where its way is free but short.
+const creep = 0.1
+
+// paced returns top, or less where the way along dir is short.
+func (e *Engine) paced(in *Input, dir geom.Vec, top float64) float64 {
+	free := math.Inf(1)
+	for i := range e.see.points {
+		if d, ok := touchAt(e.see.points[i].v, dir, in.Hull); ok && d < free {
+			free = d
+		}
+	}
+	return math.Min(top, math.Max(creep*top, free/headway))
+}
+
+// seek drives straight to the goal, with v = min(v0, GoalGain·distance). Where
+// something beside the way is nearer than StandOff, it turns by as little as
+// keeps clear of that, as long as a small turn will do: the goal distance goes on falling.
+func (e *Engine) seek(in *Input, m *Mode, top float64) geom.Vec {
+	t := &e.track
+	toGoal := in.Goal.Sub(t.plan)
+	dir := toGoal.Unit()
+	v := top
+	if m.GoalGain > 0 {
+		v = math.Min(v, m.GoalGain*t.distance)
+	}
+	if m.StandOff > 0 {
+		dir = e.clearOf(in, dir, in.Hull+m.StandOff, math.Min(m.StandOff, t.distance))
+	}
+	return dir.Scale(math.Min(v, e.paced(in, dir, top)))
+}
+
+const maxDeflection = 0.8660254037844387 // cosine of 30°
+
+func (e *Engine) clearOf(in *Input, dir geom.Vec, w, reach float64) geom.Vec {
+	left, okL := e.sweep(dir, RightSide, w, reach)
+	right, okR := e.sweep(dir, LeftSide, w, reach)
+	cl, cr := -1.0, -1.0
+	if okL {
+		cl = dir.Dot(left)
+	}
+	if okR {
+		cr = dir.Dot(right)
+	}
+	switch {
+	case cl >= cr && cl >= maxDeflection:
+		return left
+	case cr > cl && cr >= maxDeflection:
+		return right
+	}
+	return dir
+}
+
+// reachOfPush is the gap within which returns push the robot away.
+func (e *Engine) reachOfPush(in *Input) float64 {
+	if m := &e.l.Modes[e.mode]; m.Behaviour == Avoidance && m.StandOff > 0 {
+		return m.StandOff
+	}
+	return in.Hull
+}
+
+// avoid moves away from what is near, the faster the nearer it is. Along a wall
+// that it has on a side it goes on at the same time, slowly, and the push only moves
+// it aside: a push against the way would hold it for ever where a passage is narrow.
+func (e *Engine) avoid(in *Input, m *Mode, top float64) geom.Vec {
+	reach := e.reachOfPush(in)
+	var push geom.Vec
+	if out, ok := e.wayOut(in, reach); ok {
+		push = out.Scale(top * math.Min(1, math.Max(0, (reach-e.see.nearest)/reach)))
+	}
+	if e.track.side == NoSide {
+		return push
+	}
+	on := e.followWall(in, m, top/2)
+	if dir := on.Unit(); push.Dot(dir) < 0 {
+		push = push.AddScaled(-push.Dot(dir), dir)
+	}
+	return push.Add(on)
+}
+
+// grain is the step of the sums over returns: whole numbers of it add up to the
+// same in any order, so that a mirrored ring, whose beams come in another order,
+// gives the mirrored sum.
+const grain = 1 << 40
+
+// wayOut returns the direction out of the obstacles: the sum over the returns
+// with gap < reach of the unit vectors away from them, weighted (1 − gap/reach)².
+// ok is false when nothing is that near or the sum vanishes.
+func (e *Engine) wayOut(in *Input, reach float64) (dir geom.Vec, ok bool) {
+	var x, y int64
+	s := &e.see
+	for i := range s.points[:s.current] {
+		p := &s.points[i]
+		gap := p.rho - in.Hull
+		if gap >= reach || p.rho == 0 {
+			continue
+		}
+		k := math.Min(2, 1-gap/reach)
+		k = k * k / p.rho * grain
+		x -= int64(k * p.v.X)
+		y -= int64(k * p.v.Y)
+	}
+	sum := geom.Vec{X: float64(x), Y: float64(y)}
+	if n := sum.Norm(); n > grain*1e-6 {
+		return sum.Scale(1 / n), true
+	}
+	return geom.Vec{}, false
+}

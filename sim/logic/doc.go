@@ -1,0 +1,2 @@
+// Package logic is the switching automaton.
+package logic
