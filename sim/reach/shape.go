@@ -1,7 +1,6 @@
 package reach
 
 import (
-	"fmt"
 	"math"
 
 	"leeway/sim/floor"
@@ -39,7 +38,12 @@ func (y *Yard) build(c floor.Config) error {
 		s := &c.Solids[i]
 		y.ids = append(y.ids, s.ID)
 		if err := floor.CheckSolid(*s); err != nil {
-			return fmt.Errorf("%s: %w", y.name(int32(i)), err)
+			if faults, ok := err.(floor.Faults); ok {
+				for k := range faults {
+					faults[k].Ref.Index = i
+				}
+			}
+			return err
 		}
 		switch s.Kind {
 		case floor.Disc:
