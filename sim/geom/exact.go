@@ -72,7 +72,7 @@ func Sincos(x float64) (sin, cos float64) {
 	r := rest - third
 	tail := (rest - r) - third // the angle is r + tail
 
-	// What is missing from π/2 beyond its parts is 2⁻¹¹⁸ a multiple. Zero, NaN
+	// What is lost beyond the parts of π/2 is less than 2⁻¹¹⁸ a multiple. Zero, NaN
 	// and infinity come this way too.
 	if !(math.Abs(x) < 1<<19) || math.Abs(r) <= float64(math.Abs(n)*0x1p-58) {
 		if x == 0 {

@@ -1,9 +1,11 @@
 package geom
 
 import (
+	"cmp"
 	"math"
 	"math/big"
 	"math/rand/v2"
+	"slices"
 	"testing"
 )
 
@@ -49,6 +51,19 @@ func awkwardAngles() []float64 {
 		for _, m := range []float64{n * math.Pi / 2, n * math.Pi / 4} {
 			a = append(a, m, math.Nextafter(m, 0), math.Nextafter(m, math.Inf(1)), m+1e-9, m-1e-6)
 		}
+	}
+	// Of all float64 that the fast reduction takes, those whose rests are the
+	// smallest for their multiple of π/2: it has too few bits for the worst.
+	type hard struct{ x, rest float64 }
+	var all []hard
+	for n := 1.0; n < 333_772; n++ {
+		x := n * (math.Pi / 2)
+		_, rest, _ := reduceExactly(x)
+		all = append(all, hard{x, math.Abs(rest) / n})
+	}
+	slices.SortFunc(all, func(a, b hard) int { return cmp.Compare(a.rest, b.rest) })
+	for _, h := range all[:100] {
+		a = append(a, h.x)
 	}
 	return a
 }

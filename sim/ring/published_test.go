@@ -10,6 +10,7 @@ import (
 	"gonum.org/v1/gonum/integrate/quad"
 	"gonum.org/v1/gonum/stat/distuv"
 
+	"leeway/sim/chance"
 	"leeway/sim/geom"
 	"leeway/sim/truth"
 )
@@ -342,6 +343,28 @@ func TestStreamsDoNotShiftEachOther(t *testing.T) {
 	for k := range a {
 		if !slices.Equal(a[k], b[k]) {
 			t.Fatalf("tick %d: other echoes are lost with less noise", k)
+		}
+	}
+}
+
+// TestReadingsComeFromTheNamedStreams works a reading out by hand from the
+// streams that New names: those names are part of every recorded run.
+func TestReadingsComeFromTheNamedStreams(t *testing.T) {
+	c := plain(200)
+	c.Min, c.NoiseBase, c.NoiseGain, c.Dropout, c.Random = 1, 0.01, 0.02, 0.4, 0.2
+	r := New(c, 77)
+	r.Sense(0, at(0, 0, 0), shell(4))
+	for i, z := range r.Scan().Range {
+		noise, dropout, random := chance.New(77, "ring noise", i), chance.New(77, "ring dropout", i), chance.New(77, "ring random", i)
+		want, hit := 4+(0.01+0.02*4)*noise.Normal(), dropout.Uniform() >= 0.4
+		if random.Uniform() < 0.2 {
+			want, hit = 1+9*random.Uniform(), true
+		}
+		if !hit {
+			want = 10
+		}
+		if math.Abs(z-want) > 1e-12 || r.Scan().Hit[i] != hit {
+			t.Errorf("beam %d reads %v, %v; its streams say %v, %v", i, z, r.Scan().Hit[i], want, hit)
 		}
 	}
 }

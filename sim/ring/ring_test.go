@@ -96,7 +96,7 @@ func TestRangeLimits(t *testing.T) {
 // and on the steps of Quantum; no hit reads exactly Max.
 func TestReadingsStayInRange(t *testing.T) {
 	for _, q := range []float64{0, 0.001, 0.07} {
-		c := Config{Bearings: Even(8), Min: 0.05, Max: 1.3, NoiseBase: 0.4, NoiseGain: 0.3,
+		c := Config{Bearings: Even(8), Min: 0.09, Max: 1.3, NoiseBase: 0.4, NoiseGain: 0.3,
 			Dropout: 0.2, Random: 0.2, Quantum: q, Period: 1, SubRays: 1}
 		r := New(c, 5)
 		hits := 0
@@ -121,6 +121,48 @@ func TestReadingsStayInRange(t *testing.T) {
 		}
 		if hits < 60_000 {
 			t.Errorf("only %d hits of 160,000", hits)
+		}
+	}
+}
+
+// TestLimitsThatAreStepsButForRounding: 3·0.1 is a little more than 0.3 and 0.3/0.1
+// a little less than 3 in float64; the far limit is a step and a hit all the same.
+func TestLimitsThatAreStepsButForRounding(t *testing.T) {
+	c := plain(1)
+	c.Min, c.Max, c.Quantum = 0.1, 0.3, 0.1
+	r := New(c, 1)
+	r.Sense(0, at(0, 0, 0), shell(0.3))
+	if z := r.Scan().Range[0]; z != 0.3 || !r.Scan().Hit[0] {
+		t.Errorf("an echo at 0.3 reads %v, %v", z, r.Scan().Hit[0])
+	}
+}
+
+// TestRandomReturnsSpanTheRange: evenly between Min and Max, whether or not there
+// is an echo.
+func TestRandomReturnsSpanTheRange(t *testing.T) {
+	c := plain(10)
+	c.Min, c.Max, c.Random = 1, 3, 0.25
+	for _, echo := range []float64{2, math.Inf(1)} {
+		r := New(c, 8)
+		n, random := 0.0, 0.0
+		var quarter [4]float64
+		for tick := range int64(20_000) {
+			r.Sense(tick, at(0, 0, 0), shell(echo))
+			for i, z := range r.Scan().Range {
+				n++
+				if r.Scan().Hit[i] && z != echo {
+					random++
+					quarter[min(max(int((z-1)/2*4), 0), 3)]++
+				}
+			}
+		}
+		if z := (random - 0.25*n) / math.Sqrt(n*0.25*0.75); math.Abs(z) > 5 {
+			t.Errorf("echo at %v: %v of %v readings are random, %.1f standard errors off", echo, random, n, z)
+		}
+		for k, q := range quarter {
+			if z := (q - random/4) / math.Sqrt(random*0.25*0.75); math.Abs(z) > 5 {
+				t.Errorf("echo at %v: quarter %d of the range has %v of %v, %.1f standard errors off", echo, k, q, random, z)
+			}
 		}
 	}
 }
@@ -264,7 +306,15 @@ func TestIdealReadsExactly(t *testing.T) {
 	if !math.IsInf(s.Gap, 1) || s.Toward != (geom.Vec{}) || slices.Contains(s.Hit, true) {
 		t.Errorf("out of range: gap %v toward %v", s.Gap, s.Toward)
 	}
-	r.Sense(20, at(2.1, -5, math.Pi/2), w) // 0.1 m inside the wall
+	r.Sense(15, at(-1.1, -5, 0), w)
+	if s.Gap != math.Inf(1) {
+		t.Errorf("the gap changed between readings")
+	}
+	r.Sense(20, at(-1.1, -5, 0), w) // 3.1 m: beyond Max, but not from the sensors
+	if math.Abs(s.Gap-3.1) > 1e-12 {
+		t.Errorf("at 3.1 m the gap is %v", s.Gap)
+	}
+	r.Sense(30, at(2.1, -5, math.Pi/2), w) // 0.1 m inside the wall
 	toward = s.Toward.Rotate(1, 0)
 	if math.Abs(s.Gap+0.1) > 1e-12 || toward.Sub(geom.Vec{X: 1}).Norm() > 1e-12 {
 		t.Errorf("inside: gap %v toward %v, want −0.1 and further in", s.Gap, toward)
@@ -390,6 +440,20 @@ func TestCopyAndReset(t *testing.T) {
 	}
 	if before != b.Scan() {
 		t.Errorf("the scan moved to other memory")
+	}
+
+	// What happens to a copy afterwards leaves the original alone.
+	c := New(plain(1), 1)
+	c.CopyFrom(a)
+	turned := imperfect()
+	turned.Bearings, turned.Period = Even(16), 3
+	c.Reset(turned, 8)
+	run(c, 0, 20)
+	run(a, 99, 150)
+	alone := New(imperfect(), 9)
+	run(alone, 0, 150)
+	if d := cmp.Diff(alone.Scan(), a.Scan()); d != "" {
+		t.Errorf("the original felt what was done to a copy: %s", d)
 	}
 
 	b.Reset(imperfect(), 9)
