@@ -38,7 +38,7 @@ func Office(seed uint64, segments int, o Options) (Scene, error) {
 	}
 	d := &draft{dice: dice{chance.New(seed, "office", 0)}, Options: o}
 	f := officeFor(segments)
-	d.Width = 2*corridorWide + float64(f.bays)*roomWide
+	d.Width = 2*corridorWide + float64(float64(f.bays)*roomWide)
 	d.Height = float64(f.corridors) * f.pitch()
 	d.border()
 	left := segments - 4
@@ -85,7 +85,7 @@ func officeFor(segments int) office {
 
 // corner returns the corner at the back of a room, toward the left.
 func (f *office) corner(r room) geom.Vec {
-	p := geom.Vec{X: corridorWide + float64(r.bay)*roomWide, Y: float64(r.corridor) * f.pitch()}
+	p := geom.Vec{X: corridorWide + float64(float64(r.bay)*roomWide), Y: float64(r.corridor) * f.pitch()}
 	if r.above {
 		p.Y = float64(r.corridor+1) * f.pitch()
 	}
@@ -151,7 +151,7 @@ func (d *draft) furnishOffice(f *office, left int) {
 	for i := 0; left > 0; i++ {
 		p, in := f.corner(rooms[i]), rooms[i].in()
 		if left < 4 {
-			p.Y += in * roomDeep / 2
+			p.Y += float64(in * roomDeep / 2)
 			d.add(floor.Wall, "shelf", 0, p, p.Add(geom.Vec{X: d.between(0.3, 0.8)}))
 			left--
 			continue

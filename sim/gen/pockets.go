@@ -85,7 +85,7 @@ func (d *draft) hook(thick bool) floor.Solid {
 		return floor.Solid{Kind: floor.Wall, Points: []geom.Vec{{X: x - deep, Y: y}, {X: x, Y: y}, {X: x, Y: -y}}}
 	}
 	t := d.between(0.1, 0.4)
-	z := y + side*t
+	z := y + float64(side*t)
 	return floor.Solid{Kind: floor.Polygon, Points: []geom.Vec{{X: x - deep, Y: y}, {X: x - deep, Y: z}, {X: x + t, Y: z}, {X: x + t, Y: -y}, {X: x, Y: -y}, {X: x, Y: y}}}
 }
 

@@ -215,7 +215,7 @@ func (w *circler) crossCircle(other, center geom.Vec, radius, r float64) {
 	if d2 == 0 {
 		return
 	}
-	x := (d2 + (radius-r)*(radius+r)) / 2 // distance to the common chord, times |d|
+	x := (d2 + float64((radius-r)*(radius+r))) / 2 // distance to the common chord, times |d|
 	h2 := float64(d2*radius*radius) - float64(x*x)
 	if h2 < 0 {
 		return

@@ -141,7 +141,7 @@ func (h *horizon) takeIn(q *prim, r float64) {
 		n2, depth = n, math.Max(depth, t)
 	}
 	const margin = 1e-9
-	from, to := h.pseudo(n1)*h.scale, h.pseudo(n2)*h.scale
+	from, to := float64(h.pseudo(n1)*h.scale), float64(h.pseudo(n2)*h.scale)
 	i := int(math.Ceil(math.Min(from+margin, horizonBins)))
 	j := int(math.Min(to-margin, horizonBins))
 	switch {
@@ -173,7 +173,7 @@ func (h *horizon) hidden(n geom.Vec, t float64) bool {
 // hides reports whether a block of cells lies wholly beyond the horizon or off the arc's rays.
 func (h *horizon) hides(g *grid, level, col, row int) bool {
 	size := g.cell * float64(int(1)<<level)
-	half := size/2 + g.cell*1e-6
+	half := size/2 + float64(g.cell*1e-6)
 	middle := geom.Vec{X: g.min.X + float64(float64(col)*g.cell) + size/2, Y: g.min.Y + float64(float64(row)*g.cell) + size/2}
 	// Near blocks are never hidden: seen from them the corners stand in no simple order.
 	w := middle.Sub(h.a.center)
@@ -194,7 +194,7 @@ func (h *horizon) hides(g *grid, level, col, row int) bool {
 		}
 	}
 	t := math.Sqrt(d2 - square(h.a.radius))
-	from, to := h.pseudo(lo)*h.scale, h.pseudo(hi)*h.scale
+	from, to := float64(h.pseudo(lo)*h.scale), float64(h.pseudo(hi)*h.scale)
 	// A bin more on either side makes up for rounding.
 	i, j := int(math.Min(from, horizonBins+1))-1, int(math.Min(to, horizonBins+1))+1
 	if to >= from {

@@ -58,7 +58,7 @@ func (y *Yard) flatten(back []geom.Vec, side int32, arrive, leave float64) []geo
 	for k := n; k >= 0; k-- {
 		x := arrive
 		if n > 0 {
-			x += angle * (k / n)
+			x += float64(angle * (k / n))
 		}
 		back = append(back, a.point(x, signOf(side)))
 	}
