@@ -9,7 +9,10 @@ package page
 import "github.com/a-h/templ"
 import templruntime "github.com/a-h/templ/runtime"
 
-// Bench is a first sketch.
+import "strconv"
+
+// Bench is the page of one live session. What it shows comes over the live
+// stream; js/bench.js puts it into the places that are held free here.
 func Bench(v BenchView) templ.Component {
 	return templruntime.GeneratedTemplate(func(templ_7745c5c3_Input templruntime.GeneratedComponentInput) (templ_7745c5c3_Err error) {
 		templ_7745c5c3_W, ctx := templ_7745c5c3_Input.Writer, templ_7745c5c3_Input.Context
@@ -39,18 +42,341 @@ func Bench(v BenchView) templ.Component {
 				}()
 			}
 			ctx = templ.InitializeContext(ctx)
-			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 1, "<main></main>")
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 1, "<header class=\"top\">")
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
+			templ_7745c5c3_Err = mark().Render(ctx, templ_7745c5c3_Buffer)
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 2, "<h1 id=\"name\" title=\"")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			var templ_7745c5c3_Var3 string
+			templ_7745c5c3_Var3, templ_7745c5c3_Err = templruntime.NewAttributeExpression(v.Purpose).Resolve(ctx)
+			if templ_7745c5c3_Err != nil {
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 11, Col: 34}
+			}
+			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var3)
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 3, "\">")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			var templ_7745c5c3_Var4 string
+			templ_7745c5c3_Var4, templ_7745c5c3_Err = templ.JoinStringErrs(v.Name)
+			if templ_7745c5c3_Err != nil {
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 11, Col: 45}
+			}
+			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var4))
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 4, "</h1><span id=\"viewers\" class=\"soft\"></span> <span class=\"actions\"><button id=\"copy\" class=\"btn\" type=\"button\">Copy link</button> <a id=\"save\" class=\"btn\" href=\"")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			var templ_7745c5c3_Var5 string
+			templ_7745c5c3_Var5, templ_7745c5c3_Err = templruntime.NewAttributeExpression(saveURL(v.Session)).ResolveURL(ctx)
+			if templ_7745c5c3_Err != nil {
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 15, Col: 54}
+			}
+			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var5)
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 5, "\" download>Save file</a> <button id=\"open\" class=\"btn\" type=\"button\">Open</button></span></header><p id=\"brief\" class=\"brief\" role=\"group\" aria-label=\"The brief: the scenario in words\">")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = brief(v.Brief).Render(ctx, templ_7745c5c3_Buffer)
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 6, "</p><main><section class=\"floor\" aria-label=\"Floor\"><svg id=\"floor\" tabindex=\"0\" role=\"application\" aria-label=\"Floor. Tab reaches what can be moved, arrow keys move it: 0.1 metres, with Shift 0.5, with Alt 0.01. On the floor itself arrow keys pan, plus and minus zoom, 0 shows all of it.\"></svg> <output id=\"cursor\" class=\"cursor\" aria-live=\"off\"></output><div class=\"zoom\" role=\"group\" aria-label=\"Zoom\"><button type=\"button\" data-zoom=\"1.5\" aria-label=\"Zoom in\">+</button> <button type=\"button\" data-zoom=\"0.667\" aria-label=\"Zoom out\">−</button> <button type=\"button\" data-zoom=\"0\" aria-label=\"Show the whole floor\"><svg width=\"14\" height=\"14\" viewBox=\"0 0 14 14\" aria-hidden=\"true\"><path d=\"M1 4.5V1h3.5M9.5 1H13v3.5M13 9.5V13H9.5M4.5 13H1V9.5\"></path></svg></button></div><div id=\"banner\" class=\"banner\" role=\"status\" hidden><span class=\"words\"></span> <button class=\"btn\" type=\"button\"></button></div></section><div class=\"side\"><section id=\"why\" class=\"card why\" aria-label=\"What the robot is doing, and why\"><p class=\"mode\"><i class=\"swatch\" aria-hidden=\"true\"></i> <span class=\"mode-name\">…</span> <span class=\"since\"></span></p><p class=\"because\"></p></section><section id=\"verdict\" class=\"card verdict\" aria-label=\"The run against what is asked\"><p class=\"head\"><span class=\"big\">–</span> <span class=\"of\">of leeway.</span></p><table><thead><tr><th scope=\"col\"><span class=\"unseen\">measure</span></th><th scope=\"col\">robot</th><th scope=\"col\">asked</th></tr></thead> <tbody>")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			for _, r := range measures {
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 7, "<tr data-row=\"")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				var templ_7745c5c3_Var6 string
+				templ_7745c5c3_Var6, templ_7745c5c3_Err = templruntime.NewAttributeExpression(r.key).Resolve(ctx)
+				if templ_7745c5c3_Err != nil {
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 67, Col: 28}
+				}
+				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var6)
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 8, "\"><th scope=\"row\">")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				var templ_7745c5c3_Var7 string
+				templ_7745c5c3_Var7, templ_7745c5c3_Err = templ.JoinStringErrs(r.label)
+				if templ_7745c5c3_Err != nil {
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 68, Col: 34}
+				}
+				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var7))
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 9, "</th><td>–</td><td></td></tr>")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 10, "</tbody></table><p class=\"ending\"><span class=\"status\"></span> <span class=\"reason\"></span></p></section></div></main><section id=\"transport\" class=\"tape\" aria-label=\"Run\"><div class=\"controls\"><button class=\"round\" type=\"button\" data-do=\"restart\" aria-label=\"Restart\" title=\"Restart (R)\"><svg viewBox=\"0 0 16 16\" aria-hidden=\"true\"><path d=\"M3 3h2v10H3zM13 3v10L6 8z\"></path></svg></button> <button class=\"round primary\" type=\"button\" data-do=\"play\" aria-label=\"Play\" title=\"Play or pause (space)\"><svg class=\"to-play\" viewBox=\"0 0 16 16\" aria-hidden=\"true\"><path d=\"M4.5 2.5v11l9-5.5z\"></path></svg> <svg class=\"to-pause\" viewBox=\"0 0 16 16\" aria-hidden=\"true\"><path d=\"M3.5 3h3v10h-3zM9.5 3h3v10h-3z\"></path></svg></button> <button class=\"round\" type=\"button\" data-do=\"tick\" aria-label=\"One tick\" title=\"One tick (.)\"><svg viewBox=\"0 0 16 16\" aria-hidden=\"true\"><path d=\"M3 3v10l7-5zM11 3h2v10h-2z\"></path></svg></button> <span class=\"clock\" role=\"timer\" aria-label=\"Time of the run\">0:00.0</span><fieldset class=\"speeds\"><legend class=\"unseen\">Speed, times real time</legend> ")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			for _, s := range speeds {
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 11, "<label title=\"")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				var templ_7745c5c3_Var8 string
+				templ_7745c5c3_Var8, templ_7745c5c3_Err = templruntime.NewAttributeExpression(s.title).Resolve(ctx)
+				if templ_7745c5c3_Err != nil {
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 98, Col: 28}
+				}
+				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var8)
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 12, "\"><input type=\"radio\" name=\"speed\" value=\"")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				var templ_7745c5c3_Var9 string
+				templ_7745c5c3_Var9, templ_7745c5c3_Err = templruntime.NewAttributeExpression(s.value).Resolve(ctx)
+				if templ_7745c5c3_Err != nil {
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 99, Col: 55}
+				}
+				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var9)
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 13, "\" aria-label=\"")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				var templ_7745c5c3_Var10 string
+				templ_7745c5c3_Var10, templ_7745c5c3_Err = templruntime.NewAttributeExpression(s.title).Resolve(ctx)
+				if templ_7745c5c3_Err != nil {
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 99, Col: 78}
+				}
+				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var10)
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 14, "\"")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				if s.value == "1" {
+					templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 15, " checked")
+					if templ_7745c5c3_Err != nil {
+						return templ_7745c5c3_Err
+					}
+				}
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 16, "> <span aria-hidden=\"true\">")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				var templ_7745c5c3_Var11 string
+				templ_7745c5c3_Var11, templ_7745c5c3_Err = templ.JoinStringErrs(s.label)
+				if templ_7745c5c3_Err != nil {
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 100, Col: 41}
+				}
+				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var11))
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+				templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 17, "</span></label>")
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 18, "</fieldset><ul class=\"legend\" aria-label=\"Modes\"></ul><button id=\"keys-open\" class=\"plain\" type=\"button\">Keys</button></div></section><footer>")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = caution().Render(ctx, templ_7745c5c3_Buffer)
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 19, "</footer><div id=\"strip\" class=\"strip\"><span id=\"strip-words\"></span> <button type=\"button\" aria-label=\"Dismiss\">×</button></div><div id=\"heard\" class=\"unseen\" aria-live=\"polite\" role=\"status\"></div>")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = dialogs(v).Render(ctx, templ_7745c5c3_Buffer)
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = dropSheet().Render(ctx, templ_7745c5c3_Buffer)
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			if v.Hello != nil {
+				templ_7745c5c3_Err = templ.JSONScript("hello", v.Hello).Render(ctx, templ_7745c5c3_Buffer)
+				if templ_7745c5c3_Err != nil {
+					return templ_7745c5c3_Err
+				}
+			}
 			return nil
 		})
-		templ_7745c5c3_Err = layout("Leeway", "bench.js", "bench").Render(templ.WithChildren(ctx, templ_7745c5c3_Var2), templ_7745c5c3_Buffer)
+		templ_7745c5c3_Err = layout(v.Name+" · Leeway", "bench.js", "bench", templ.Attributes{"data-session": v.Session}).Render(templ.WithChildren(ctx, templ_7745c5c3_Var2), templ_7745c5c3_Buffer)
 		if templ_7745c5c3_Err != nil {
 			return templ_7745c5c3_Err
 		}
 		return nil
 	})
+}
+
+func dialogs(v BenchView) templ.Component {
+	return templruntime.GeneratedTemplate(func(templ_7745c5c3_Input templruntime.GeneratedComponentInput) (templ_7745c5c3_Err error) {
+		templ_7745c5c3_W, ctx := templ_7745c5c3_Input.Writer, templ_7745c5c3_Input.Context
+		if templ_7745c5c3_CtxErr := ctx.Err(); templ_7745c5c3_CtxErr != nil {
+			return templ_7745c5c3_CtxErr
+		}
+		templ_7745c5c3_Buffer, templ_7745c5c3_IsBuffer := templruntime.GetBuffer(templ_7745c5c3_W)
+		if !templ_7745c5c3_IsBuffer {
+			defer func() {
+				templ_7745c5c3_BufErr := templruntime.ReleaseBuffer(templ_7745c5c3_Buffer)
+				if templ_7745c5c3_Err == nil {
+					templ_7745c5c3_Err = templ_7745c5c3_BufErr
+				}
+			}()
+		}
+		ctx = templ.InitializeContext(ctx)
+		ctx = templ.ClearChildren(ctx)
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 20, "<dialog id=\"share\" aria-labelledby=\"share-title\"><div class=\"sheet-body\"><h2 id=\"share-title\">Link to this run</h2><p id=\"share-words\"></p><input id=\"share-link\" type=\"text\" readonly aria-label=\"Link\"><p class=\"row\"><a id=\"share-save\" class=\"btn primary\" href=\"")
+		if templ_7745c5c3_Err != nil {
+			return templ_7745c5c3_Err
+		}
+		var templ_7745c5c3_Var13 string
+		templ_7745c5c3_Var13, templ_7745c5c3_Err = templruntime.NewAttributeExpression(saveURL(v.Session)).ResolveURL(ctx)
+		if templ_7745c5c3_Err != nil {
+			return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 131, Col: 68}
+		}
+		_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var13)
+		if templ_7745c5c3_Err != nil {
+			return templ_7745c5c3_Err
+		}
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 21, "\" download hidden>Save file</a> <button id=\"share-copy\" class=\"btn\" type=\"button\">Copy</button> <button class=\"btn\" type=\"button\" data-close>Close</button></p></div></dialog> <dialog id=\"opener\" aria-labelledby=\"opener-title\"><div class=\"sheet-body\"><h2 id=\"opener-title\">Open another floor</h2>")
+		if templ_7745c5c3_Err != nil {
+			return templ_7745c5c3_Err
+		}
+		templ_7745c5c3_Err = intake("").Render(ctx, templ_7745c5c3_Buffer)
+		if templ_7745c5c3_Err != nil {
+			return templ_7745c5c3_Err
+		}
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 22, "<p class=\"row\"><a class=\"btn\" href=\"/\">To the shipped floors</a> <button class=\"btn\" type=\"button\" data-close>Close</button></p></div></dialog> <dialog id=\"keys\" aria-labelledby=\"keys-title\"><div class=\"sheet-body\"><h2 id=\"keys-title\">Keys</h2><dl class=\"keys\">")
+		if templ_7745c5c3_Err != nil {
+			return templ_7745c5c3_Err
+		}
+		for _, k := range keys {
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 23, "<div><dt><kbd>")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			var templ_7745c5c3_Var14 string
+			templ_7745c5c3_Var14, templ_7745c5c3_Err = templ.JoinStringErrs(k.key)
+			if templ_7745c5c3_Err != nil {
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 152, Col: 26}
+			}
+			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var14))
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 24, "</kbd></dt><dd>")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			var templ_7745c5c3_Var15 string
+			templ_7745c5c3_Var15, templ_7745c5c3_Err = templ.JoinStringErrs(k.does)
+			if templ_7745c5c3_Err != nil {
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 152, Col: 51}
+			}
+			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var15))
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 25, "</dd></div>")
+			if templ_7745c5c3_Err != nil {
+				return templ_7745c5c3_Err
+			}
+		}
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 26, "</dl><label class=\"check\"><input id=\"keys-on\" type=\"checkbox\" checked> Space, <kbd>.</kbd> and <kbd>R</kbd> work anywhere on the page</label><p class=\"row\"><button class=\"btn\" type=\"button\" data-close>Close</button></p></div></dialog>")
+		if templ_7745c5c3_Err != nil {
+			return templ_7745c5c3_Err
+		}
+		return nil
+	})
+}
+
+var measures = []struct{ key, label string }{
+	{"time", "time"},
+	{"way", "way"},
+	{"switches", "mode switches"},
+	{"contacts", "contacts"},
+	{"saturated", "wheels at their limit"},
+	{"lost", "lost track by"},
+}
+
+var speeds = []struct{ value, label, title string }{
+	{"0.25", "×¼", "a quarter of real time"},
+	{"0.5", "×½", "half of real time"},
+	{"1", "×1", "real time"},
+	{"2", "×2", "2 times real time"},
+	{"4", "×4", "4 times real time"},
+	{"8", "×8", "8 times real time"},
+	{"16", "×16", "16 times real time"},
+	{"64", "×64", "64 times real time"},
+	{"0", "max", "as fast as it goes"},
+}
+
+var keys = []struct{ key, does string }{
+	{"Space", "play, pause"},
+	{".", "one tick"},
+	{"R", "restart"},
+	{"Tab", "the next thing on the floor"},
+	{"Arrows", "move it by 0.1 m; with Shift 0.5 m, with Alt 0.01 m; on the floor itself: pan"},
+	{"+ −", "zoom, on the floor"},
+	{"0", "the whole floor"},
+	{"Shift", "held while dragging: snap to 0.1 m"},
+	{"Esc", "while dragging: back to where it was; in a number: its old value"},
+	{"↑ ↓", "in a number of the brief: a step; with Shift ten"},
+}
+
+func saveURL(session string) templ.SafeURL {
+	return templ.URL("/api/sessions/" + session + "/scenario")
+}
+
+// where says where in a file a problem is.
+func (p Problem) where() string {
+	s := ""
+	if p.Line > 0 {
+		s = "line " + strconv.Itoa(p.Line)
+		if p.Column > 0 {
+			s += ", column " + strconv.Itoa(p.Column)
+		}
+	}
+	if p.Path != "" {
+		if s != "" {
+			s += " · "
+		}
+		s += p.Path
+	}
+	return s
 }
 
 var _ = templruntime.GeneratedTemplate

@@ -73,7 +73,7 @@ const brief = new Brief(byId('brief', HTMLElement), {
 const transport = new Transport(byId('transport', HTMLElement), (command) => {
   if (!live.send(command)) strip.show('Not done: the connection is lost.', true);
 });
-const banner = new Banner(byId('banner', HTMLElement), { retry: () => live.retry(), takeUp });
+const banner = new Banner(byId('banner', HTMLElement), () => live.retry());
 const cards = [new Why(byId('why', HTMLElement)), new Verdict(byId('verdict', HTMLElement)), transport, brief];
 
 /**

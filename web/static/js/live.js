@@ -71,6 +71,7 @@ export class Live {
     const turn = this.#turn;
     const socket = new WebSocket(liveAddress(this.#session, location));
     this.#socket = socket;
+    let ended = false;
     const slow = setTimeout(() => socket.close(), OPENING);
     socket.addEventListener('open', () => clearTimeout(slow));
     socket.addEventListener('message', (event) => {
@@ -79,24 +80,25 @@ export class Live {
       if (!message) return;
       this.#attempt = 0;
       this.onMessage(message);
-      // The server closes after this by itself; coming back would only wake it.
-      if (message.kind === 'ended') this.close();
+      if (message.kind === 'ended') ended = true;
     });
     socket.addEventListener('close', (event) => {
       clearTimeout(slow);
-      if (turn === this.#turn) this.#lost(event.code);
+      if (turn !== this.#turn) return;
+      if (event.code === UNKNOWN_SESSION) this.onLink('gone');
+      // A run that the server has put away is not woken by coming back unasked.
+      else if (!ended) this.#lost();
     });
   }
 
-  /** @param {number} code */
-  async #lost(code) {
-    this.#socket = null;
+  async #lost() {
     const turn = this.#turn;
-    if (code === UNKNOWN_SESSION || (await this.#unknown())) {
-      if (turn === this.#turn) this.onLink('gone');
+    const unknown = await this.#unknown();
+    if (turn !== this.#turn) return;
+    if (unknown) {
+      this.onLink('gone');
       return;
     }
-    if (turn !== this.#turn) return;
     const delay = 1000 * wait(this.#attempt++, Math.random());
     this.onLink('lost', Date.now() + delay);
     this.#timer = window.setTimeout(() => this.#open(), delay);

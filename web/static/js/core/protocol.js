@@ -180,9 +180,22 @@ export function hello(m) {
     solids: (m.solids ?? []).map((/** @type {any} */ s) => ({ ...s, points: s.points ?? [] })),
     movers: (m.movers ?? []).map((/** @type {any} */ v) => ({ ...v, route: v.route ?? [] })),
     brief: m.brief ?? [],
-    asked: m.asked ?? {},
+    asked: asked(m.asked ?? {}),
     trail: m.trail ?? [],
     frame: frame(m.frame ?? {}),
+  };
+}
+
+/**
+ * What is not asked is left out, where the server writes a number that cannot be.
+ * @param {any} a
+ * @returns {Asked}
+ */
+function asked(a) {
+  return {
+    within_s: a.within_s > 0 ? a.within_s : undefined,
+    leeway_m: typeof a.leeway_m === 'number' ? a.leeway_m : undefined,
+    switches: a.switches >= 0 ? a.switches : undefined,
   };
 }
 

@@ -103,6 +103,7 @@ export function listen(surface, hands) {
   surface.addEventListener('keydown', (event) => {
     if (dragging && event.key === 'Escape') {
       dragging = false;
+      pointers.clear(); // what the pointer does until it is up is nothing
       hands.restore();
       return;
     }

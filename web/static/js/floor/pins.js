@@ -14,14 +14,11 @@ import { say, set, svg } from '../dom.js';
 const WORD = { up: 17, half: 22, height: 16 };
 /** The leader of the closest place: how far out it goes before it turns level, px. */
 const LEADER = 34;
-/** Width of one character of the pin, px; close enough to choose a side by. */
-const CHARACTER = 8.2;
-
 export class Pins {
-  #start = svg('g', { class: 'start' }, svg('path', { d: 'M-8 0H8M0 -8V8' }), svg('path', { class: 'heading' }));
+  #start = svg('g', { class: 'start-mark' }, svg('path', { d: 'M-8 0H8M0 -8V8' }), svg('path', { class: 'heading' }));
   #startWord = svg('text', { class: 'word', y: -WORD.up });
   #goalArea = svg('circle', { class: 'goal-area' });
-  #goal = svg('g', { class: 'goal' }, svg('circle', { class: 'goal-rim' }), svg('circle', { class: 'goal-dot', r: 4 }));
+  #goal = svg('g', { class: 'goal-mark' }, svg('circle', { class: 'goal-rim' }), svg('circle', { class: 'goal-dot', r: 4 }));
   #goalWord = svg('text', { class: 'word' });
   #circle = svg('circle', { class: 'pin-hull' });
   #leader = svg('path', { class: 'pin-leader' });
@@ -115,9 +112,7 @@ export class Pins {
     set(this.#circle, 'cy', px(cy));
     set(this.#circle, 'r', px(Math.max(hello.hull * c.scale, 5)));
 
-    say(this.#number, metres(frame.leeway));
-    say(this.#when, ` closest, at ${clock(time, 0)}`);
-    const width = ((this.#number.textContent?.length ?? 0) + (this.#when.textContent?.length ?? 0)) * CHARACTER;
+    const width = this.#write(metres(frame.leeway), ` closest, at ${clock(time, 0)}`);
     const right = x + LEADER + width < c.width - 8 ? 1 : -1;
     const up = y - LEADER > 26 ? -1 : 1;
     const [ex, ey] = [x + right * LEADER, y + up * LEADER];
@@ -125,6 +120,25 @@ export class Pins {
     set(this.#text, 'x', px(ex + right * 3));
     set(this.#text, 'y', px(ey - 5));
     set(this.#text, 'text-anchor', right > 0 ? 'start' : 'end');
+  }
+
+  #written = '';
+  #width = 0;
+
+  /**
+   * Writes the pin and returns how wide it is, px. It is measured only when it
+   * says something else, since measuring makes the browser lay out the page.
+   * @param {string} number
+   * @param {string} when
+   */
+  #write(number, when) {
+    if (number + when !== this.#written) {
+      this.#written = number + when;
+      say(this.#number, number);
+      say(this.#when, when);
+      this.#width = Math.round(this.#text.getComputedTextLength()) + 6;
+    }
+    return this.#width;
   }
 }
 

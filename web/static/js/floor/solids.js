@@ -10,7 +10,7 @@ import { set, svg } from '../dom.js';
 
 export class Solids {
   #fills = svg('path', { class: 'solid' });
-  #walls = svg('path', { class: 'wall' });
+  #walls = svg('path', { class: 'thin' });
   #moved = svg('g');
   /** @type {Map<number, SVGPathElement>} */
   #single = new Map();
@@ -38,7 +38,7 @@ export class Solids {
       const i = this.#index.get(id);
       if (i === undefined || this.#single.has(i)) continue;
       const s = hello.solids[i];
-      const path = svg('path', { class: s.shape === 'wall' ? 'wall' : 'solid', d: outline(s) });
+      const path = svg('path', { class: s.shape === 'wall' ? 'thin' : 'solid', d: outline(s) });
       this.#single.set(i, path);
       this.#moved.append(path);
       stale = true;

@@ -41,7 +41,7 @@ export class Trail {
     const line = svg('path', { class: `way ${look}` });
     this.#lines.append(line);
     if (look !== 'wall' && look !== 'avoid') return { line, mark: null };
-    const mark = svg('path', { class: `mark ${look}` });
+    const mark = svg('path', { class: `tick ${look}` });
     this.#marks.append(mark);
     return { line, mark };
   }

@@ -14,23 +14,19 @@ export class Banner {
 
   /**
    * @param {HTMLElement} root
-   * @param {{retry: () => void, takeUp: () => void}} does
+   * @param {() => void} retry
    */
-  constructor(root, does) {
+  constructor(root, retry) {
     this.#root = root;
     this.#words = part(root, '.words');
     this.#button = part(root, 'button');
-    this.#button.addEventListener('click', () => {
-      if (root.dataset.link === 'lost') does.retry();
-      else does.takeUp();
-    });
+    this.#button.addEventListener('click', retry);
   }
 
   /** @param {State} state */
   draw(state) {
     clearTimeout(this.#timer);
     const { link } = state;
-    set(this.#root, 'data-link', link);
     // The first connection takes a blink; a banner for it would only flash.
     const shown = link !== 'live' && !(link === 'connecting' && state.retryAt === 0);
     set(this.#root, 'hidden', !shown);

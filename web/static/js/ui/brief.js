@@ -104,8 +104,10 @@ class NumberField {
   #send;
   #input;
   #note;
-  /** What the server has, as the field last showed it. */
+  /** What the server last said. */
   #value = 0;
+  /** What has been sent since, and not been answered. @type {number | null} */
+  #sent = null;
   /** A step that has been shown and not yet sent. */
   #timer = 0;
   #typing = false;
@@ -142,11 +144,13 @@ class NumberField {
   show(part) {
     this.#part = part;
     this.#value = Number(part.value);
+    this.#sent = null;
     set(this.#input, 'aria-valuemin', part.min);
     set(this.#input, 'aria-valuemax', part.max);
     if (this.#typing || this.#timer) return;
     this.#write(this.#value);
-    this.#hint();
+    // A refusal stays until somebody does something about it.
+    if (this.root.dataset.bad === undefined) this.#hint();
   }
 
   /**
@@ -155,6 +159,7 @@ class NumberField {
    */
   refuse(words) {
     this.#cancel();
+    this.#sent = null;
     this.#complain(words);
     this.#write(this.#value);
   }
@@ -167,9 +172,13 @@ class NumberField {
     this.#fit();
   }
 
-  /** As wide as what is in it: the face is monospaced. */
+  /**
+   * As wide as what is in it, since the face is monospaced, and no narrower than
+   * what was: the sentence does not break anew while somebody types.
+   */
   #fit() {
-    this.#input.style.width = `${Math.max(this.#input.value.length, 1)}ch`;
+    const least = this.#typing ? entry.format(this.#value, this.#range).length : 1;
+    this.#input.style.width = `${Math.max(this.#input.value.length, least)}ch`;
   }
 
   #hint() {
@@ -186,11 +195,15 @@ class NumberField {
     set(this.#input, 'aria-invalid', 'true');
     set(this.#note, 'role', 'alert');
     say(this.#note, words);
+    keepInView(this.#note);
   }
 
   #listen() {
     const input = this.#input;
-    input.addEventListener('focus', () => input.select());
+    input.addEventListener('focus', () => {
+      input.select();
+      keepInView(this.#note);
+    });
     input.addEventListener('input', () => {
       this.#typing = true;
       this.#cancel();
@@ -209,7 +222,7 @@ class NumberField {
         case 'Escape':
           this.#cancel();
           this.#typing = false;
-          this.#write(this.#value);
+          this.#write(this.#sent ?? this.#value);
           this.#hint();
           input.select();
           break;
@@ -229,7 +242,10 @@ class NumberField {
   /** Takes what was typed, when it can be taken. */
   #commit() {
     this.#cancel();
-    if (!this.#typing && this.root.dataset.bad === undefined) return this.#sendIfNew();
+    if (!this.#typing) {
+      this.#sendIfNew();
+      return;
+    }
     const v = entry.parse(this.#input.value, this.#part.unit);
     const wrong = entry.problem(v, this.#range);
     if (wrong || v === null) {
@@ -244,8 +260,8 @@ class NumberField {
 
   #sendIfNew() {
     const v = entry.parse(this.#input.value, this.#part.unit);
-    if (v === null || v === this.#value || entry.problem(v, this.#range)) return;
-    if (this.#send(v)) this.#value = v;
+    if (v === null || v === (this.#sent ?? this.#value) || entry.problem(v, this.#range)) return;
+    if (this.#send(v)) this.#sent = v;
     else this.refuse('The connection is lost; the number stays as it was.');
   }
 
@@ -254,7 +270,7 @@ class NumberField {
     const typed = entry.parse(this.#input.value, this.#part.unit);
     this.#typing = false;
     this.#hint();
-    this.#write(entry.step(typed ?? this.#value, n, this.#range));
+    this.#write(entry.step(typed ?? this.#sent ?? this.#value, n, this.#range));
     this.#later(REST);
   }
 
@@ -289,7 +305,7 @@ class NumberField {
       down = true;
       scrubbing = false;
       x = event.clientX;
-      from = this.#value;
+      from = this.#sent ?? this.#value;
       root.setPointerCapture(event.pointerId);
     });
     root.addEventListener('pointermove', (event) => {
@@ -344,6 +360,7 @@ class ChoiceField {
     this.#note = html('span', { class: 'note', id: note });
     this.root = html('span', { class: 'choice' }, this.#select, this.#note);
     this.#hint();
+    this.#select.addEventListener('focus', () => keepInView(this.#note));
     this.#select.addEventListener('change', () => {
       this.#hint();
       if (!this.#send(this.#select.value)) this.refuse('The connection is lost; the choice stays as it was.');
@@ -367,8 +384,19 @@ class ChoiceField {
     set(this.root, 'data-bad', true);
     set(this.#note, 'role', 'alert');
     say(this.#note, words);
+    keepInView(this.#note);
     this.#select.value = String(this.#part.value);
   }
+}
+
+/**
+ * Moves a note to the left by as much as it would stick out on the right.
+ * @param {HTMLElement} note
+ */
+function keepInView(note) {
+  note.style.translate = '';
+  const over = note.getBoundingClientRect().right - document.documentElement.clientWidth + 8;
+  if (over > 0) note.style.translate = `${-Math.ceil(over)}px 0`;
 }
 
 /** @param {Part} p */
