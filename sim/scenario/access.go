@@ -103,11 +103,7 @@ func (s *Scenario) at(path string, wantChoice bool) (*rule, reflect.Value, error
 	p, v := root(), reflect.ValueOf(s).Elem()
 	for _, name := range strings.Split(path, ".") {
 		f := p.field(name)
-		form := ""
-		if g, ok := v.Interface().(former); ok {
-			form = g.form()
-		}
-		if !f.in(form) {
+		if form := p.form(v); !f.in(form) {
 			return nil, reflect.Value{}, fmt.Errorf("%s has no place in %s", path, describeForm(p, form))
 		}
 		p, v = f.spec, v.Field(f.index)

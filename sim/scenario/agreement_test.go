@@ -15,7 +15,7 @@ import (
 // cannot be understood as a tree at all.
 func findings(text []byte) (list []finding, ok bool) {
 	var r report
-	tree, fault := parseTree(text)
+	tree, fault := parseTree(string(text))
 	if fault != nil {
 		return nil, false
 	}

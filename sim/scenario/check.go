@@ -52,15 +52,18 @@ func (c checker) clash(path, other, format string, args ...any) {
 	}
 }
 
+// wrong reports what is wrong with the value at p.
+func (c checker) wrong(p *path, beyond bool, format string, args ...any) {
+	if !c.full() {
+		at := p.String()
+		c.add(at, -1, beyond, at+" "+fmt.Sprintf(format, args...))
+	}
+}
+
 // value checks a value and all that is in it against the rules.
 func (c checker) value(s *spec, v reflect.Value, p *path) {
 	if len(c.list) > 0 && c.bad[p.String()] {
 		return
-	}
-	wrong := func(beyond bool, format string, args ...any) {
-		if !c.full() {
-			c.add(p.String(), -1, beyond, p.String()+" "+fmt.Sprintf(format, args...))
-		}
 	}
 	switch v.Kind() {
 	case reflect.Pointer:
@@ -68,10 +71,7 @@ func (c checker) value(s *spec, v reflect.Value, p *path) {
 			c.value(s.elem, v.Elem(), p)
 		}
 	case reflect.Struct:
-		form := ""
-		if f, ok := v.Interface().(former); ok {
-			form = f.form()
-		}
+		form := s.form(v)
 		for i := range s.fields {
 			if f := &s.fields[i]; f.in(form) {
 				c.value(f.spec, v.Field(f.index), &path{up: p, name: f.name})
@@ -79,13 +79,13 @@ func (c checker) value(s *spec, v reflect.Value, p *path) {
 		}
 	case reflect.Slice:
 		if n, r := v.Len(), s.rule; float64(n) > r.Max {
-			wrong(false, "may hold at most %v %s; it holds %d", r.Max, r.Label, n)
+			c.wrong(p, false, "may hold at most %v %s; it holds %d", r.Max, r.Label, n)
 			return
 		} else if float64(n) < r.Min {
 			if n == 0 {
-				wrong(false, "must not be empty")
+				c.wrong(p, false, "must not be empty")
 			} else {
-				wrong(false, "must hold at least %v %s; it holds %d", r.Min, r.Label, n)
+				c.wrong(p, false, "must hold at least %v %s; it holds %d", r.Min, r.Label, n)
 			}
 		}
 		fallthrough
@@ -95,27 +95,27 @@ func (c checker) value(s *spec, v reflect.Value, p *path) {
 		}
 	case reflect.Float64:
 		if f := v.Float(); !(f >= s.rule.Min && f <= s.rule.Max) {
-			wrong(false, "must be %s; it is %s", between(s.rule), short(f))
+			c.wrong(p, false, "must be %s; it is %s", between(s.rule), short(f))
 		}
 	case reflect.Int, reflect.Int64:
 		if f := float64(v.Int()); f < s.rule.Min || f > s.rule.Max {
-			wrong(false, "must be %s; it is %d", between(s.rule), v.Int())
+			c.wrong(p, false, "must be %s; it is %d", between(s.rule), v.Int())
 		}
 	case reflect.String:
 		t := v.String()
 		switch r := s.rule; {
 		case r.Options != nil:
 			if !r.allows(t) {
-				wrong(false, "%s", r.mustBe(t))
+				c.wrong(p, false, "%s", r.mustBe(t))
 			}
 		case r.nonEmpty && t == "":
-			wrong(false, "must not be empty")
+			c.wrong(p, false, "must not be empty")
 		case utf8.RuneCountInString(t) > r.chars:
-			wrong(false, "may be %d characters long; it is %d", r.chars, utf8.RuneCountInString(t))
+			c.wrong(p, false, "may be %d characters long; it is %d", r.chars, utf8.RuneCountInString(t))
 		case strings.ContainsFunc(t, unicode.IsControl):
-			wrong(true, "must stand on one line, without control characters")
+			c.wrong(p, true, "must stand on one line, without control characters")
 		case !utf8.ValidString(t): // from Go only: a file is checked as a whole
-			wrong(true, "must be UTF-8 text")
+			c.wrong(p, true, "must be UTF-8 text")
 		}
 	}
 }

@@ -1,5 +1,7 @@
 package scenario
 
+import "reflect"
+
 // Version is the version of the format that this package writes, and the newest it reads.
 const Version = 1
 
@@ -17,8 +19,8 @@ const (
 	MaxMovers    = 200
 	MaxRoute     = 200 // way points of one mover
 	MaxBeams     = 720
-	MaxRays      = 3_600 // beams times the rays of a cone
-	MaxEdits     = 5_000
+	MaxRays      = 3_600  // beams times the rays of a cone
+	MaxEdits     = 20_000 // ten minutes of dragging
 	MaxModes     = 50
 	MaxProblems  = 50 // reported at once; the rest is counted
 )
@@ -386,7 +388,7 @@ func defaults() Scenario {
 			Noise: 0.01, NoisePerM: 0.005, Dropout: 0.005, Step: 0.001,
 			Period: 0.05, ConeRays: 1,
 		},
-		Logic:     Logic{Kind: "default", Side: "better"},
+		Logic:     preset(reflect.TypeFor[Logic](), "default").(Logic),
 		Goal:      Goal{Radius: 0.15},
 		Asked:     Asked{Within: 90, Leeway: 0.05, Switches: -1},
 		Timing:    Timing{Tick: 0.005, DecideEvery: 0.02},
@@ -394,17 +396,17 @@ func defaults() Scenario {
 	}
 }
 
-// fresh returns what a value in a list, or of several forms, holds where the file says nothing.
-func fresh(old any, form string) any {
-	switch old.(type) {
-	case Mover:
+// preset returns what a struct in a list, or of several forms, holds where the file says nothing; nil for nothing.
+func preset(t reflect.Type, form string) any {
+	switch {
+	case t == reflect.TypeFor[Mover]():
 		return Mover{Speed: 0.4}
-	case Mode:
+	case t == reflect.TypeFor[Mode]():
 		return Mode{Ending: "goes_on", Side: "better", SpeedShare: 1}
-	case Logic:
-		if form == "table" {
-			return Logic{Kind: "table", Name: "A table", Sector: 35}
-		}
+	case t == reflect.TypeFor[Logic]() && form == "default":
+		return Logic{Kind: "default", Side: "better"}
+	case t == reflect.TypeFor[Logic]():
+		return Logic{Kind: "table", Name: "A table", Sector: 35}
 	}
-	return old
+	return nil
 }

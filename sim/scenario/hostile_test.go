@@ -71,22 +71,40 @@ func TestHostileFiles(t *testing.T) {
 	}
 }
 
+// large is about as large as a file can be: every wall there may be.
+func large(tb testing.TB) []byte {
+	s := New(400, 300)
+	for i := range MaxPieces - 4 {
+		x, y := 2+float64(i%300), 2+float64(i/300)
+		s.Floor.Walls = append(s.Floor.Walls, Wall{Points: []Point{{x, y}, {x + 0.25, y + 0.5}}})
+	}
+	s.normalise()
+	return s.Print()
+}
+
 func BenchmarkParse(b *testing.B) {
-	text := mustParse(b, everything).Print()
-	b.SetBytes(int64(len(text)))
-	b.ReportAllocs()
-	for b.Loop() {
-		if _, err := Parse(text); err != nil {
-			b.Fatal(err)
-		}
+	for name, text := range map[string][]byte{"small": mustParse(b, everything).Print(), "large": large(b)} {
+		b.Run(name, func(b *testing.B) {
+			b.SetBytes(int64(len(text)))
+			b.ReportAllocs()
+			for b.Loop() {
+				if _, err := Parse(text); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
 	}
 }
 
 func BenchmarkPrint(b *testing.B) {
-	s := mustParse(b, everything)
-	b.ReportAllocs()
-	for b.Loop() {
-		s.Print()
+	for name, text := range map[string][]byte{"small": mustParse(b, everything).Print(), "large": large(b)} {
+		s := mustParse(b, string(text))
+		b.Run(name, func(b *testing.B) {
+			b.ReportAllocs()
+			for b.Loop() {
+				s.Print()
+			}
+		})
 	}
 }
 
@@ -95,5 +113,15 @@ func BenchmarkEncode(b *testing.B) {
 	b.ReportAllocs()
 	for b.Loop() {
 		s.Encode()
+	}
+}
+
+func BenchmarkSetNumber(b *testing.B) {
+	s := mustParse(b, everything)
+	b.ReportAllocs()
+	for b.Loop() {
+		if err := s.SetNumber("robot.speed_m_s", 0.5); err != nil {
+			b.Fatal(err)
+		}
 	}
 }

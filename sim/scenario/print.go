@@ -96,10 +96,7 @@ func (p *printer) line(depth int) {
 
 // eachField visits the fields of a struct that are printed.
 func eachField(s *spec, v reflect.Value, visit func(*fieldSpec, reflect.Value)) {
-	form := ""
-	if f, ok := v.Interface().(former); ok {
-		form = f.form()
-	}
+	form := s.form(v)
 	for i := range s.fields {
 		f := &s.fields[i]
 		if w := v.Field(f.index); f.in(form) && !(f.omit && w.IsZero()) {

@@ -12,7 +12,7 @@ import (
 // Parse reads and validates a file. The error is Problems, all of them at once.
 func Parse(data []byte) (*Scenario, error) {
 	var r report
-	tree, fault := parseTree(data)
+	tree, fault := parseTree(string(data))
 	if fault != nil {
 		r.add("", fault.at, true, fault.text)
 		return nil, r.problems(data)
@@ -85,6 +85,7 @@ func (r reader) say(p *path, n *node, beyond bool, format string, args ...any) {
 	r.add(p.String(), int(n.at), beyond, fmt.Sprintf(format, append([]any{at}, args...)...))
 }
 
+// read reads a node into the value at p.
 func (r reader) read(s *spec, n *node, v reflect.Value, p *path) {
 	if n.kind == bad {
 		r.say(p, n, false, n.text)
@@ -116,7 +117,7 @@ func (r reader) read(s *spec, n *node, v reflect.Value, p *path) {
 			r.read(s.elem, &n.items[i], v.Index(i), &path{up: p, index: i})
 		}
 	case reflect.String:
-		v.SetString(n.text)
+		v.SetString(strings.Clone(n.text)) // not a part of the whole file
 		if n.text == "" && s.rule != nil && s.rule.nonEmpty {
 			r.say(p, n, false, "%s must not be empty")
 		}
@@ -174,11 +175,13 @@ func (r reader) object(s *spec, n *node, v reflect.Value, p *path) {
 			return
 		}
 	}
-	v.Set(reflect.ValueOf(fresh(v.Interface(), form)))
+	if d := preset(s.typ, form); d != nil {
+		v.Set(reflect.ValueOf(d))
+	}
 	for i, k := range n.keys {
 		at := &path{up: p, name: k.name}
 		f := s.field(k.name)
-		first := slices.IndexFunc(n.keys, func(o key) bool { return o.name == k.name })
+		first := n.index(k.name)
 		switch {
 		case f == nil && r.full(): // suggestions cost time
 		case f == nil:
@@ -186,12 +189,12 @@ func (r reader) object(s *spec, n *node, v reflect.Value, p *path) {
 		case first < i:
 			r.add(at.String(), int(k.at), true, at.String()+" is given twice")
 		case !f.in(form):
-			r.add(at.String(), int(k.at), false, fmt.Sprintf("%s has no place in %s", at, describeForm(s, form)))
+			r.add(at.String(), int(k.at), false, at.String()+" has no place in "+describeForm(s, form))
 		default:
 			r.read(f.spec, &n.items[i], v.Field(f.index), at)
 		}
 	}
-	if g, ok := v.Interface().(former); ok && g.form() != form {
+	if s.form(v) != form {
 		// What makes the form is there but worth nothing (no corners, a radius of 0), so that the value
 		// alone no longer tells its form: judge it here.
 		for _, f := range s.fields {

@@ -68,7 +68,7 @@ func text(path, label string, chars int, nonEmpty bool) rule {
 const (
 	maxSide  = 500  // m, of a floor
 	maxReach = 1000 // m, of any coordinate: a thing dragged to the other end of a floor may stick out of it
-	maxTicks = 10_000_000
+	maxTicks = 1_000_000_000
 	maxName  = 200
 	maxID    = 60
 	maxSeed  = 1<<53 - 1 // the largest whole number that every JSON reader keeps

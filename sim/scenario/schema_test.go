@@ -85,7 +85,10 @@ func (g generator) refine(s *generate.Schema, p *spec, def reflect.Value) {
 			g.t.Errorf("%v has no description", p.typ)
 		}
 		if !def.IsValid() {
-			def = reflect.ValueOf(fresh(reflect.Zero(p.typ).Interface(), "table"))
+			def = reflect.Zero(p.typ)
+			if d := preset(p.typ, ""); d != nil {
+				def = reflect.ValueOf(d)
+			}
 		}
 		for _, f := range p.fields {
 			q, ok := s.Properties.Get(f.name)
@@ -147,7 +150,7 @@ func (g generator) split(s *generate.Schema, p *spec) {
 			}
 			if p.typ == reflect.TypeFor[Logic]() && q.Default != nil { // the forms of a logic have defaults of their own
 				own := *q
-				own.Default = reflect.ValueOf(fresh(Logic{Side: "better"}, form)).Field(f.index).Interface()
+				own.Default = reflect.ValueOf(preset(p.typ, form)).Field(f.index).Interface()
 				q = &own
 			}
 			one.Properties.Set(f.name, q)

@@ -38,6 +38,14 @@ func (f *fieldSpec) in(form string) bool {
 	return false
 }
 
+// form returns which of its forms a struct has, "" if it has only one.
+func (s *spec) form(v reflect.Value) string {
+	if s.forms == nil {
+		return ""
+	}
+	return v.Interface().(former).form()
+}
+
 // field returns the field with this name, or nil.
 func (s *spec) field(name string) *fieldSpec {
 	for i := range s.fields {

@@ -43,12 +43,20 @@ type key struct {
 	at   int32
 }
 
-// get returns the first member with this name.
-func (n *node) get(name string) *node {
+// index returns the place of the first member with this name, −1 if there is none.
+func (n *node) index(name string) int {
 	for i := range n.keys {
 		if n.keys[i].name == name {
-			return &n.items[i]
+			return i
 		}
+	}
+	return -1
+}
+
+// get returns the first member with this name.
+func (n *node) get(name string) *node {
+	if i := n.index(name); i >= 0 {
+		return &n.items[i]
 	}
 	return nil
 }
@@ -63,14 +71,14 @@ type syntaxError struct {
 const maxFields = 100
 
 type scanner struct {
-	text   []byte
+	text   string
 	at     int
 	depth  int
 	values int
 }
 
-// parseTree reads a whole text.
-func parseTree(text []byte) (root node, fault *syntaxError) {
+// parseTree reads a whole text. The nodes hold parts of it, not copies.
+func parseTree(text string) (root node, fault *syntaxError) {
 	s := scanner{text: text}
 	defer func() {
 		switch r := recover().(type) {
@@ -84,12 +92,12 @@ func parseTree(text []byte) (root node, fault *syntaxError) {
 	if len(text) > MaxBytes {
 		s.fail(0, "the file is longer than %d MB", MaxBytes>>20)
 	}
-	if strings.HasPrefix(string(text[:min(3, len(text))]), "\uFEFF") {
+	if strings.HasPrefix(text, "\uFEFF") {
 		s.fail(0, "the file starts with a byte order mark; save it as UTF-8 without one")
 	}
-	if !utf8.Valid(text) {
+	if !utf8.ValidString(text) {
 		for i := 0; ; {
-			r, n := utf8.DecodeRune(text[i:])
+			r, n := utf8.DecodeRuneInString(text[i:])
 			if r == utf8.RuneError && n == 1 {
 				s.fail(i, "the file is not UTF-8 text here")
 			}
@@ -117,7 +125,7 @@ func (s *scanner) here() string {
 	if s.at >= len(s.text) {
 		return "the end of the file"
 	}
-	r, _ := utf8.DecodeRune(s.text[s.at:])
+	r, _ := utf8.DecodeRuneInString(s.text[s.at:])
 	return strconv.QuoteRune(r)
 }
 
@@ -238,7 +246,7 @@ func (s *scanner) word() node {
 	for s.at < len(s.text) && (isWord(s.text[s.at]) || strings.IndexByte("+-.", s.text[s.at]) >= 0) {
 		s.at++
 	}
-	w := string(s.text[at:s.at])
+	w := s.text[at:s.at]
 	n := node{at: int32(at), text: w}
 	switch {
 	case w == "null":
@@ -318,7 +326,7 @@ func (s *scanner) string() string {
 	}
 	if s.at < len(s.text) && s.text[s.at] == '"' { // nothing escaped: the usual case
 		s.at++
-		return string(s.text[from : s.at-1])
+		return s.text[from : s.at-1]
 	}
 	b := append([]byte(nil), s.text[from:s.at]...)
 	for {
@@ -375,7 +383,7 @@ func (s *scanner) escape(b []byte) []byte {
 func (s *scanner) unit() rune {
 	at := s.at
 	if at+6 <= len(s.text) && s.text[at+1] == 'u' {
-		if v, err := strconv.ParseUint(string(s.text[at+2:at+6]), 16, 32); err == nil {
+		if v, err := strconv.ParseUint(s.text[at+2:at+6], 16, 32); err == nil {
 			s.at += 6
 			return rune(v)
 		}
