@@ -10,7 +10,7 @@ import (
 // or +Inf where nothing is met within max. A ray that starts inside a filled
 // solid reads 0, also on its edge. len(out) ≥ len(rays). No allocation after the first call.
 //
-// The range is the least of [geom.RaySegment] and [geom.RayDisc] over all primitives.
+// The range is the least of [geom.SegmentRange] and [geom.RayDisc] over all primitives.
 func (w *World) Cast(rays []Ray, max float64, out []float64) {
 	w.near = w.near[:0]
 	if len(w.bodies) > 0 {
@@ -66,7 +66,7 @@ func (b *body) cast(o, d geom.Vec) float64 {
 	}
 	best := math.Inf(1)
 	for i := range b.segs {
-		if t, _, ok := geom.RaySegment(o, d, b.segs[i]); ok && t < best {
+		if t, ok := geom.SegmentRange(o, d, b.segs[i]); ok && t < best {
 			best = t
 		}
 	}
@@ -74,17 +74,36 @@ func (b *body) cast(o, d geom.Vec) float64 {
 }
 
 // castMap returns the range of what stands in the map, +Inf or some number above reach when
-// there is nothing within reach. It walks from cell to cell until it has met something nearer
-// than the cells still ahead.
+// there is nothing within reach: first what can be seen from here, then, if that does
+// not go far enough, what lies on the way.
 func (w *World) castMap(o, d geom.Vec, reach float64) float64 {
+	s := &w.m.sight
+	if s.reach == 0 || !s.holds(o) {
+		return w.walk(o, d, 0, reach)
+	}
+	cell := s.row(o.Y)*s.nx + s.column(o.X)
+	at := s.spots[cell]
+	if at.fills > 0 {
+		for _, i := range s.fills.of(cell) {
+			if w.inside(i, o) {
+				return 0
+			}
+		}
+	}
+	if t := w.look(at, o, d, min(reach, s.reach)); t <= s.reach || reach <= s.reach {
+		return t
+	}
+	return w.walk(o, d, s.reach, reach)
+}
+
+// walk returns the range of what stands in the map along the ray between t0 and t1; beyond
+// that it may find or miss. It goes from cell to cell until it has met something nearer
+// than the cells still ahead.
+func (w *World) walk(o, d geom.Vec, t0, t1 float64) float64 {
 	g := &w.m.grid
 	best := math.Inf(1)
-	if g.holds(o) && w.insideAny(o) {
-		return 0
-	}
 	// Where the ray is in the rectangle of the grid.
 	ix, iy := 1/d.X, 1/d.Y
-	t0, t1 := 0.0, reach
 	if d.X != 0 {
 		a, b := (g.min.X-o.X)*ix, (g.max.X-o.X)*ix
 		t0, t1 = max(t0, min(a, b)), min(t1, max(a, b))
@@ -136,7 +155,7 @@ func (w *World) castMap(o, d geom.Vec, reach float64) float64 {
 func (w *World) castCell(cell int, o, d geom.Vec, best float64) float64 {
 	for _, k := range w.m.grid.items.of(cell) {
 		if k >= 0 {
-			if t, _, ok := geom.RaySegment(o, d, w.segs[k]); ok && t < best {
+			if t, ok := geom.SegmentRange(o, d, w.segs[k]); ok && t < best {
 				best = t
 			}
 		} else if t, ok := geom.RayDisc(o, d, w.discs[-1-k]); ok && t < best {
@@ -144,17 +163,6 @@ func (w *World) castCell(cell int, o, d geom.Vec, best float64) float64 {
 		}
 	}
 	return best
-}
-
-// insideAny reports whether p is inside a polygon that stands in the map.
-func (w *World) insideAny(p geom.Vec) bool {
-	g := &w.m.grid
-	for _, i := range g.fills.of(g.row(p.Y)*g.nx + g.column(p.X)) {
-		if w.inside(i, p) {
-			return true
-		}
-	}
-	return false
 }
 
 // inside reports whether p is inside polygon i of the map. A lifted polygon has no inside here.

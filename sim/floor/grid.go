@@ -126,14 +126,19 @@ func newGrid(m *Map) grid {
 			g.underDisc(d, func(cell int) { put(cell, int32(-1-i)) })
 		}
 	})
-	g.fills = collect(g.nx*g.ny, func(put func(int, int32)) {
+	g.fills = m.polygonsUnder(&g.frame)
+	return g
+}
+
+// polygonsUnder lists for each cell the polygons that reach into it.
+func (m *Map) polygonsUnder(f *frame) lists {
+	return collect(f.nx*f.ny, func(put func(int, int32)) {
 		for i := range m.solids {
 			if m.solids[i].Kind == Polygon {
-				g.underPolygon(m.solids[i].Points, func(cell int) { put(cell, int32(i)) })
+				f.underPolygon(m.solids[i].Points, func(cell int) { put(cell, int32(i)) })
 			}
 		}
 	})
-	return g
 }
 
 const (

@@ -17,7 +17,8 @@ type Map struct {
 	discOwner []int32
 	firstDisc []int32
 
-	grid grid
+	grid  grid
+	sight sight
 }
 
 // NewMap checks the floor and builds the index. reach is the range (m) within
@@ -48,6 +49,7 @@ func NewMap(c Config, reach float64) (*Map, error) {
 		m.movers[i] = newTimetable(v)
 	}
 	m.grid = newGrid(m)
+	m.sight = newSight(m, reach)
 	return m, nil
 }
 

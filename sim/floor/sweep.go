@@ -11,9 +11,12 @@ const (
 	// within one sweep. Two suffice in a corner; what is left after the last is lost.
 	slides = 8
 
-	// bias is the share of a bent motion by which it is turned away from the
-	// surface, so that rounding does not leave it pointing a hair into what it just touched.
+	// bias is the share of a bent motion by which it is turned away from the surface (at
+	// most by Skin), so that rounding does not leave it pointing a hair into what it just touched.
 	bias = 1e-13
+
+	// flat is the angle, in radians, below which two surfaces that meet count as one.
+	flat = 1e-9
 
 	// longest is the farthest that a sweep goes, in metres: a motion beyond it is cut, lest squares overflow.
 	longest = 10 * Limit
@@ -72,42 +75,65 @@ func (w *World) slide(p, d geom.Vec, radius float64, at target) (end geom.Vec, c
 	if big := max(math.Abs(d.X), math.Abs(d.Y)); big > longest {
 		d = d.Scale(longest / big)
 	}
-	start, rest, reach := p, d, radius+Skin
+	start, reach := p, radius+Skin
 	var in covers
 	w.cover(&in, p, at)
 	if in.n > 0 {
-		rest, c, touched = in.outward(p, rest)
-		if touched {
-			c.Ref = w.m.ref(int32(c.Ref.Index))
+		var k int
+		if d, k = in.outward(p, d); k >= 0 {
+			c, touched = in.contact(k, p, w.m), true
 		}
 	}
-	for range slides {
+	// What is left of the motion as it was wanted, and as bent along what was touched last.
+	left, bent := d, d
+	var last touch
+	for i := range slides {
 		h := touch{at: math.Inf(1), owner: math.MaxInt32}
-		w.firstTouch(&h, p, rest, reach, at, &in)
+		w.firstTouch(&h, p, bent, reach, at, &in)
 		if !(h.at <= 1) {
-			p = p.Add(rest)
+			p = p.Add(bent)
 			break
 		}
 		if h.at > 0 {
-			p = p.AddScaled(h.at, rest)
-			rest = rest.Scale(1 - h.at)
+			p = p.AddScaled(h.at, bent)
+			left = left.Scale(1 - h.at)
 		}
-		q, _ := geom.NearestOnSegment(p, h.core)
-		v := p.Sub(q)
-		apart, n := v.Norm(), v.Unit()
+		n, gap := h.from(p, radius)
 		if !touched {
+			q, _ := geom.NearestOnSegment(p, h.core)
 			c = Contact{At: h.at, Point: q.AddScaled(h.thick, n), Normal: n, Ref: w.m.ref(h.owner)}
 			touched = true
 		}
-		// Lose the part along the normal, and get back what rounding has let it in by.
-		back := 0.0
-		if gap := apart - h.thick - radius; gap >= 0 {
-			back = max(Skin-gap, 0)
+		bent = bend(left, n, gap)
+		if i > 0 && wedged(&last, p, radius, bent) {
+			break
 		}
-		rest = rest.AddScaled(back+float64(bias*rest.Norm())-rest.Dot(n), n)
+		last = h
 	}
-	if in.n > 0 && in.deeper(p) {
-		p = start
+	if in.n > 0 {
+		if k := in.deeper(p); k >= 0 {
+			p = start
+			if !touched {
+				c, touched = in.contact(k, p, w.m), true
+			}
+		}
 	}
 	return p, c, touched
+}
+
+// bend returns the motion d without its part into a surface with normal n that is gap away. What
+// rounding has let the hull in by, within its skin, it gets back.
+func bend(d, n geom.Vec, gap float64) geom.Vec {
+	out := max(-d.Dot(n), 0) + min(float64(bias*d.Norm()), Skin)
+	if gap >= 0 && gap < Skin {
+		out += Skin - gap
+	}
+	return d.AddScaled(out, n)
+}
+
+// wedged reports whether a motion along one surface leads into the one touched before, which the hull at p still
+// touches: along that one the way led into this one, so between the two there is none.
+func wedged(last *touch, p geom.Vec, radius float64, d geom.Vec) bool {
+	n, gap := last.from(p, radius)
+	return gap <= 2*Skin && d.Dot(n) < -flat*d.Norm()
 }

@@ -28,6 +28,12 @@ func (h *touch) before(at float64, owner, piece int32) bool {
 	return at < h.at || at == h.at && (owner < h.owner || owner == h.owner && piece < h.piece)
 }
 
+// from returns the unit vector from the touched surface to a hull at p, and the gap between them.
+func (h *touch) from(p geom.Vec, radius float64) (n geom.Vec, gap float64) {
+	v := geom.FromSegment(p, h.core)
+	return v.Unit(), v.Norm() - h.thick - radius
+}
+
 // reaching is a hull on its way: where from, how far, how wide with its skin.
 type reaching struct {
 	p, d geom.Vec
@@ -87,7 +93,7 @@ func (b *body) touch(h *touch, m *reaching, in *covers) {
 }
 
 func (h *touch) segment(m *reaching, s geom.Segment, owner, piece int32, in *covers) {
-	if q, _ := geom.NearestOnSegment(m.p, s); m.p.Sub(q).Norm2() > float64(m.far*m.far) {
+	if geom.FromSegment(m.p, s).Norm2() > float64(m.far*m.far) {
 		return
 	}
 	t, ok := geom.DiscTouchesSegment(m.p, m.d, m.r, s)
@@ -104,7 +110,7 @@ func (h *touch) disc(m *reaching, d geom.Disc, owner int32) {
 }
 
 // covers are the polygons that the centre of the hull is inside of. Their edges do not stop it:
-// from inside, the way out leads through one. More than four at one place are not kept.
+// from inside, the way out leads through one. Of more than four at one place the first four count.
 type covers struct {
 	owner [4]int32
 	edges [4][]geom.Segment
@@ -138,41 +144,54 @@ func (w *World) cover(c *covers, p geom.Vec, at target) {
 	}
 }
 
+// add keeps the list in the order of owners, so that the order of asking does not matter.
 func (c *covers) add(edges []geom.Segment, owner int32, p geom.Vec) {
-	if c.n < len(c.owner) {
-		_, d := nearestEdge(edges, p)
-		c.owner[c.n], c.edges[c.n], c.depth[c.n] = owner, edges, d
-		c.n++
+	i := c.n
+	for i > 0 && c.owner[i-1] > owner {
+		i--
 	}
+	if i == len(c.owner) {
+		return
+	}
+	copy(c.owner[i+1:], c.owner[i:])
+	copy(c.edges[i+1:], c.edges[i:])
+	copy(c.depth[i+1:], c.depth[i:])
+	c.owner[i], c.edges[i] = owner, edges
+	_, c.depth[i] = nearestEdge(edges, p)
+	c.n = min(c.n+1, len(c.owner))
 }
 
-// outward returns d without what would lead deeper into the polygons that cover p, and the first
-// contact with one, whose Ref.Index is still the owner.
-func (c *covers) outward(p, d geom.Vec) (geom.Vec, Contact, bool) {
-	first, touched := Contact{Ref: Ref{Index: -1}}, false
+// contact is the touch of cover k by a hull whose centre is at p, inside it.
+func (c *covers) contact(k int, p geom.Vec, m *Map) Contact {
+	q, _ := nearestEdge(c.edges[k], p)
+	return Contact{Point: q, Normal: q.Sub(p).Unit(), Ref: m.ref(c.owner[k])}
+}
+
+// outward returns d without what would lead straight deeper into the covers, and the first of them that
+// took something away, or −1.
+func (c *covers) outward(p, d geom.Vec) (geom.Vec, int) {
+	first := -1
 	for k := range c.n {
 		q, _ := nearestEdge(c.edges[k], p)
 		n := q.Sub(p).Unit()
-		in := d.Dot(n)
-		if !(in < 0) {
-			continue
+		if in := d.Dot(n); in < 0 {
+			d = d.AddScaled(-in, n)
+			if first < 0 {
+				first = k
+			}
 		}
-		if !touched {
-			first, touched = Contact{Point: q, Normal: n, Ref: Ref{Index: int(c.owner[k])}}, true
-		}
-		d = d.AddScaled(-in, n)
 	}
-	return d, first, touched
+	return d, first
 }
 
-// deeper reports whether p is deeper in one of the polygons than the start was.
-func (c *covers) deeper(p geom.Vec) bool {
+// deeper returns the first cover in which p is deeper than the start was, or −1.
+func (c *covers) deeper(p geom.Vec) int {
 	for k := range c.n {
 		if _, d := nearestEdge(c.edges[k], p); d > c.depth[k]+Skin && insideOf(c.edges[k], p) {
-			return true
+			return k
 		}
 	}
-	return false
+	return -1
 }
 
 // nearestEdge returns the place on a polygon's boundary nearest to p, the first of equals, and how far it is.

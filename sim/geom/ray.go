@@ -11,48 +11,72 @@ import "math"
 // slip through it by a rounding error.
 const OnLine = 1e-12
 
-// RaySegment returns where the ray from o along d first meets s: the range t ≥ 0
-// in units of |d|, and the fraction f in [0, 1] of the way from s.A to s.B.
+// Narrow is the apparent width of a segment, seen from the origin of a ray and
+// measured across it in metres, below which its range is kept between those of its ends:
+// edge-on the quotient below is one of rounding errors.
+const Narrow = 1e-3
+
+// SegmentRange returns the range t ≥ 0, in units of |d|, at which the ray from o
+// along d first meets s. With a = A − o, b = B − o:
 //
-// With a = A − o, b = B − o:
+//	t = (a × b) / (d × b − d × a)
 //
-//	t = (a × b) / (d × b − d × a),   f = −(d × a) / (d × b − d × a)
-//
-// and t is kept between d·a and d·b, so that a segment seen edge-on is never
-// reported nearer or farther than it is. Both ends belong to the segment, and two
-// segments that share an end leave no gap between them. A ray along the segment
-// meets its nearer end, or range 0 if it starts on it. ok is false, and the numbers
-// 0, when they do not meet or something is not a number. The range is the same
+// Both ends belong to the segment, and two segments that share an end leave no gap between them.
+// A ray along the segment meets its nearer end, or range 0 if it starts on it. A segment seen
+// edge-on is never reported nearer or farther than it is. ok is
+// false, and t 0, when they do not meet or something is not a number. The range is the same
 // bits when A and B are exchanged and when everything is mirrored in an axis.
 //
 // d must be a unit vector for t to be a range in metres.
-func RaySegment(o, d Vec, s Segment) (t, f float64, ok bool) {
+func SegmentRange(o, d Vec, s Segment) (t float64, ok bool) {
 	a, b := s.A.Sub(o), s.B.Sub(o)
 	ca, cb := d.Cross(a), d.Cross(b)
 	if !(ca <= 0 && cb >= 0 || ca >= 0 && cb <= 0) {
-		return 0, 0, false
-	}
-	da, db := d.Dot(a), d.Dot(b)
-	lo, hi := da, db
-	if lo > hi {
-		lo, hi = hi, lo
+		return 0, false
 	}
 	den := cb - ca
-	if den == 0 { // along the segment
-		if !(hi >= -OnLine) {
-			return 0, 0, false
-		}
-		t = math.Max(lo, 0)
-		if da != db {
-			f = min(max((t-da)/(db-da), 0), 1)
-		}
-		return t, f, true
+	if math.Abs(den) < Narrow {
+		return edgeOn(a, b, d, den)
 	}
-	t = min(max(a.Cross(b)/den, lo), hi)
+	t = a.Cross(b) / den
+	if t > 0 {
+		return t, true
+	}
+	return 0, t >= -OnLine
+}
+
+// edgeOn is SegmentRange for a segment that is narrow or lies along the ray.
+func edgeOn(a, b, d Vec, den float64) (float64, bool) {
+	da, db := d.Dot(a), d.Dot(b)
+	t, hi := min(da, db), max(da, db)
+	switch {
+	case den != 0:
+		t = min(max(a.Cross(b)/den, t), hi)
+	case hi >= -OnLine: // along the ray, and not all of it behind
+		t = max(t, 0)
+	}
 	if !(t >= -OnLine) {
+		return 0, false
+	}
+	return max(t, 0), true
+}
+
+// RaySegment is SegmentRange that also tells the place: the fraction f in [0, 1] of the way from s.A to
+// s.B, f = −(d × a) / (d × b − d × a).
+func RaySegment(o, d Vec, s Segment) (t, f float64, ok bool) {
+	if t, ok = SegmentRange(o, d, s); !ok {
 		return 0, 0, false
 	}
-	return max(t, 0), min(max(-ca/den, 0), 1), true
+	a, e := s.A.Sub(o), s.B.Sub(s.A)
+	f = -d.Cross(a) / (d.Cross(s.B.Sub(o)) - d.Cross(a))
+	if math.IsNaN(f) { // along the ray
+		if along := d.Dot(e); along != 0 {
+			f = (t - d.Dot(a)) / along
+		} else {
+			f = 0
+		}
+	}
+	return t, min(max(f, 0), 1), true
 }
 
 // RayCircle returns both places where the line through o along the unit vector d
@@ -129,13 +153,15 @@ func DiscTouchesSegment(p, d Vec, r float64, s Segment) (t float64, ok bool) {
 	if n := e.Norm(); n > 0 {
 		e = Vec{e.X / n, e.Y / n}
 		a := p.Sub(s.A)
+		x, vx := e.Dot(a), e.Dot(d)
 		h, vh := e.Cross(a), e.Cross(d)
 		if h < 0 {
 			h, vh = -h, -vh
 		}
-		if h >= r && vh < 0 {
-			t = (h - r) / -vh
-			if x := e.Dot(a) + float64(t*e.Dot(d)); x >= 0 && x <= n {
+		// Beside the segment h may come out below r by a rounding error.
+		if vh < 0 && (h >= r || x >= 0 && x <= n) {
+			t = max((h-r)/-vh, 0)
+			if x += float64(t * vx); x >= 0 && x <= n {
 				return t, true
 			}
 		}
