@@ -32,8 +32,8 @@ func realRobot() sim.Config {
 	d := drive.Config{
 		Model: drive.TwoWheels, WheelRadius: 0.05, Track: 0.3,
 		MaxWheelSpeed: 14, MaxWheelAccel: 40, Lag: 0.08, DeadTime: 0.02,
-		DeadReckoning: true, CountsPerTurn: 1024, RightScale: 1.002, LeftScale: 0.999, TrackScale: 1.005, Slip: 1e-5,
-		FixEvery: 20, FixNoise: 0.01, FixTurnNoise: 0.01,
+		DeadReckoning: true, CountsPerTurn: 1024, RightScale: 1.0005, LeftScale: 0.9998, TrackScale: 1.003, Slip: 1e-5,
+		FixEvery: 8, FixNoise: 0.01, FixTurnNoise: 0.01,
 	}
 	return sim.Config{
 		Seed: 7, Tick: 0.005, DecideEvery: 4,

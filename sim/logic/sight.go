@@ -16,8 +16,6 @@ type sight struct {
 	exact geom.Vec // nearest place of all, in the frame of the belief
 	sharp bool     // exact is known
 
-	kept     [memorySize]memory
-	next     int
 	wide     bool // the ring has gaps wide enough to need the memory
 	cosine   float64
 	measured bool
@@ -32,17 +30,20 @@ type sight struct {
 	front, left, right sector
 }
 
-// beam is the last return of one beam.
+// beam is the last return of one beam, and what it has swept over before.
 type beam struct {
 	at   geom.Vec
 	tick int64
 	hit  bool
+	kept [keptPlaces]place
+	next int
 }
 
-type memory struct {
-	at   geom.Vec
-	time float64
-	full bool
+// place is a place kept in memory since a time, s; full says that there is one.
+type place struct {
+	at    geom.Vec
+	since float64
+	full  bool
 }
 
 // point is a place on something solid.
@@ -52,11 +53,11 @@ type point struct {
 }
 
 const (
-	memorySize  = 48
-	memoryTime  = 2.5  // s that a place stays in memory
-	memoryReach = 1.5  // m from the robot, beyond which nothing is kept
-	memoryApart = 0.08 // m between the kept places of one beam
-	wideGap     = 0.1  // rad between neighbouring beams, beyond which memory is used
+	keptPlaces = 4    // of each beam
+	keptTime   = 2.5  // s that a place stays in memory
+	keptReach  = 1.5  // m from the robot, beyond which nothing is kept
+	keptApart  = 0.12 // m between the kept places of one beam
+	wideGap    = 0.1  // rad between neighbouring beams, beyond which memory is used
 )
 
 // sector is the smallest gap about one direction. A sparse ring may have no beam
@@ -97,8 +98,9 @@ func (s *sight) forget() {
 }
 
 func (s *sight) forgetPlaces() {
-	s.kept = [memorySize]memory{}
-	s.next = 0
+	for i := range s.beams {
+		s.beams[i].kept = [keptPlaces]place{}
+	}
 }
 
 func (s *sight) copyFrom(src *sight) {
@@ -173,34 +175,38 @@ func (s *sight) update(b *beam, in *Input, i int) {
 	if b.hit {
 		b.at = s.pos.Add(scan.Dir[i].Rotate(s.head.Y, s.head.X).Scale(scan.Mount + scan.Range[i]))
 	}
-	if !s.wide || !old.hit || old.tick < 0 {
+	if s.wide && old.hit && old.tick >= 0 {
+		b.keep(old.at, in.Time)
+	}
+}
+
+// keep puts a place that the beam has looked at into its memory, unless it is
+// hardly apart from the last one there.
+func (b *beam) keep(at geom.Vec, time float64) {
+	last := &b.kept[(b.next+keptPlaces-1)%keptPlaces]
+	if last.full && last.at.Sub(at).Norm2() < keptApart*keptApart {
+		last.since = time
 		return
 	}
-	if b.hit && b.at.Sub(old.at).Norm2() < memoryApart*memoryApart {
-		// The beam still looks at the same place: remember where it came from
-		// only once it has moved on.
-		return
-	}
-	if old.at.Sub(s.pos).Norm2() > memoryReach*memoryReach {
-		return
-	}
-	s.kept[s.next] = memory{old.at, in.Time, true}
-	s.next = (s.next + 1) % memorySize
+	b.kept[b.next] = place{at, time, true}
+	b.next = (b.next + 1) % keptPlaces
 }
 
 // recall adds the remembered places to what is seen.
 func (s *sight) recall(in *Input) {
-	for i := range s.kept {
-		m := &s.kept[i]
-		if !m.full {
-			continue
-		}
-		if in.Time-m.time > memoryTime {
-			m.full = false
-			continue
-		}
-		v := m.at.Sub(s.pos)
-		if r2 := v.Norm2(); r2 <= memoryReach*memoryReach {
+	for i := range s.beams {
+		kept := &s.beams[i].kept
+		for j := range kept {
+			m := &kept[j]
+			if !m.full {
+				continue
+			}
+			v := m.at.Sub(s.pos)
+			r2 := v.Norm2()
+			if in.Time-m.since > keptTime || r2 > keptReach*keptReach {
+				m.full = false
+				continue
+			}
 			s.points = append(s.points, point{v, math.Sqrt(r2)})
 		}
 	}
@@ -214,8 +220,8 @@ func (s *sight) measure(in *Input, half float64) {
 	for i := range s.beams {
 		s.beams[i] = beam{tick: -1}
 	}
-	if cap(s.points) < n+memorySize+1 {
-		s.points = make([]point, 0, n+memorySize+1)
+	if most := n*(keptPlaces+1) + 1; cap(s.points) < most {
+		s.points = make([]point, 0, most)
 	}
 	_, s.cosine = geom.Sincos(math.Min(half, math.Pi))
 	s.cosine -= 1e-9 // a beam on the very edge of a sector belongs to it

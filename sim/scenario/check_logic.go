@@ -1,6 +1,11 @@
 package scenario
 
-import "fmt"
+import (
+	"fmt"
+	"strings"
+
+	"leeway/sim/logic"
+)
 
 // anyMode stands for every mode that does not end the run.
 const anyMode = "any"
@@ -14,7 +19,7 @@ func (c checker) logic() {
 	if l.Kind == "table" {
 		c.names()
 	}
-	if l.Kind == "default" || !c.sound("logic", "robot.radius_m", "robot.speed_m_s", "goal.radius_m") {
+	if !c.sound("logic", "robot.radius_m", "robot.speed_m_s", "goal.radius_m") {
 		return
 	}
 	for _, p := range c.s.logic().Check() {
@@ -22,7 +27,7 @@ func (c checker) logic() {
 		if l.Kind == "table" && p.Path != "" {
 			path += "." + p.Path
 		}
-		c.say(path, "%s: %s", path, p.Text)
+		c.say(path, "%s: %s", path, strings.TrimSuffix(p.Text, "."))
 	}
 }
 
@@ -67,19 +72,18 @@ func (c checker) names() {
 }
 
 // behaviours and readings name what the core offers, in the order of its constants.
-func behaviours() []Option {
-	return options("stop", "goal_seeking", "wall_following", "avoidance")
+func behaviours() (out []Option) {
+	for b := logic.Behaviour(0); ; b++ {
+		if _, ok := logic.BehaviourNamed(b.String()); !ok {
+			return out
+		}
+		out = append(out, Option{b.String(), b.String()})
+	}
 }
 
-func readings() []Option {
-	return options("goal_distance_m", "goal_bearing_rad", "nearest_m", "ahead_m", "front_m", "left_m", "right_m",
-		"free_way_m", "best_distance_m", "gain_m", "alignment", "time_in_mode_s", "way_in_mode_m", "closed")
-}
-
-func options(names ...string) []Option {
-	var out []Option
-	for _, n := range names {
-		out = append(out, Option{n, n})
+func readings() (out []Option) {
+	for r := range logic.NumReadings {
+		out = append(out, Option{r.String(), r.String()})
 	}
 	return out
 }

@@ -175,7 +175,7 @@ func (s *Scenario) logic() *logic.Logic {
 	if l.Kind == "default" {
 		return logic.Default(s.numbers())
 	}
-	out := &logic.Logic{Name: l.Name, Start: l.mode(l.Start), Sector: radians(l.Sector)}
+	out := &logic.Logic{Name: l.Name, Start: l.mode(l.Start), Sector: radians(l.Sector), Margin: l.Margin}
 	for _, m := range l.Modes {
 		out.Modes = append(out.Modes, logic.Mode{
 			Name:      m.Name,
@@ -186,7 +186,8 @@ func (s *Scenario) logic() *logic.Logic {
 		})
 	}
 	reading := func(name string) logic.Reading {
-		return logic.Reading(place("logic.transitions[].when[].reading", name))
+		r, _ := logic.ReadingNamed(name)
+		return r
 	}
 	for _, t := range l.Transitions {
 		u := logic.Transition{From: l.mode(t.From), To: l.mode(t.To), MinTime: t.MinTime, Hold: t.Hold, Meet: t.Meet}

@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"pgregory.net/rapid"
 
 	"leeway/sim"
 	"leeway/sim/drive"
@@ -114,6 +115,48 @@ func TestConfigChoices(t *testing.T) {
 	}
 }
 
+// TestNamesOfTheLogic: the choices of a table are the core's names in the core's order.
+func TestNamesOfTheLogic(t *testing.T) {
+	for path, name := range map[string]func(i int) string{
+		"logic.modes[].behaviour":             func(i int) string { return logic.Behaviour(i).String() },
+		"logic.modes[].ending":                func(i int) string { return logic.Ending(i).String() },
+		"logic.modes[].side":                  func(i int) string { return logic.SideRule(i).String() },
+		"logic.side":                          func(i int) string { return logic.SideRule(i).String() },
+		"logic.transitions[].when[].relation": func(i int) string { return logic.Relation(i).String() },
+		"logic.transitions[].when[].reading":  func(i int) string { return logic.Reading(i).String() },
+	} {
+		for i, o := range ruleAt()[path].Options {
+			if o.Value != name(i) {
+				t.Errorf("%s: %s is %s in the core", path, o.Value, name(i))
+			}
+		}
+	}
+	if n := len(readings()); n != int(logic.NumReadings) {
+		t.Errorf("%d readings", n)
+	}
+	if n := len(behaviours()); n != int(logic.Avoidance)+1 {
+		t.Errorf("%d behaviours", n)
+	}
+}
+
+// TestConfigOfAnyScenario: what the parser accepts, the core accepts.
+func TestConfigOfAnyScenario(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		s := anyScenario(t)
+		c, err := s.Config()
+		if err != nil {
+			t.Fatal(err)
+		}
+		r, err := sim.New(c)
+		if err != nil {
+			t.Fatalf("%v\n%s", err, s.Print())
+		}
+		for range 20 {
+			r.Step()
+		}
+	})
+}
+
 func TestConfigOfEverything(t *testing.T) {
 	s := mustParse(t, everything)
 	c := config(t, s)
@@ -167,7 +210,7 @@ func TestConfigOfEverything(t *testing.T) {
 func TestConfigOfATable(t *testing.T) {
 	c := config(t, mustParse(t, tableLogic))
 	want := &logic.Logic{
-		Name: "There", Start: 0, Sector: 40 * math.Pi / 180,
+		Name: "There", Start: 0, Sector: 40 * math.Pi / 180, Margin: 0.04,
 		Modes: []logic.Mode{
 			{Name: "go", Behaviour: logic.GoalSeeking, GoalGain: 1.5, Speed: 1},
 			{Name: "back", Behaviour: logic.Avoidance, Speed: 0.5},

@@ -229,6 +229,8 @@ type Logic struct {
 	Start string `json:"start" form:"table" jsonschema:"required"`
 	// Sector is the half width of the sectors in which ahead, front, left and right look.
 	Sector float64 `json:"sector_deg" form:"table"`
+	// Margin that the hull's way straight to the goal is widened by on both sides.
+	Margin float64 `json:"margin_m" form:"table"`
 	// Modes of the table.
 	Modes []Mode `json:"modes" form:"table" jsonschema:"required"`
 	// Transitions in order of priority.
@@ -259,7 +261,7 @@ type Transition struct {
 	From string `json:"from" jsonschema:"required"`
 	// To is the name of the mode that is entered.
 	To string `json:"to" jsonschema:"required"`
-	// When lists the conditions, all of which must hold.
+	// When lists the conditions, all of which must hold; without any, min_time_s or hold_s fires the transition.
 	When []Condition `json:"when" jsonschema:"required"`
 	// Least time in the mode before the transition may fire.
 	MinTime float64 `json:"min_time_s"`
@@ -406,7 +408,7 @@ func preset(t reflect.Type, form string) any {
 	case t == reflect.TypeFor[Logic]() && form == "default":
 		return Logic{Kind: "default", Side: "better"}
 	case t == reflect.TypeFor[Logic]():
-		return Logic{Kind: "table", Name: "A table", Sector: 35}
+		return Logic{Kind: "table", Name: "A table", Sector: 30, Margin: 0.04}
 	}
 	return nil
 }
