@@ -69,4 +69,4 @@ func (s *Stream) Uint64() uint64 {
 }
 
 // Uniform returns a number in [0, 1), one of the 2⁵³ evenly spaced ones.
-func (s *Stream) Uniform() float64 { return float64(s.Uint64()>>11) * 0x1p-53 }
+func (s *Stream) Uniform() float64 { return float64(float64(s.Uint64()>>11) * 0x1p-53) }
