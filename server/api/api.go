@@ -44,10 +44,7 @@ type Config struct {
 	Creations int
 }
 
-type server struct {
-	Config
-	gallery gallery
-}
+type server struct{ Config }
 
 const (
 	// maxBody is the largest request accepted, bytes: a scenario file of the
@@ -62,17 +59,17 @@ func New(c Config) http.Handler {
 	if c.Creations == 0 {
 		c.Creations = 120
 	}
-	s := &server{Config: c}
-	go s.gallery.cards() // made before the first person asks
+	s := &server{c}
+	go gallery() // made before the first person asks
 
 	r := chi.NewRouter()
-	r.Use(s.recoverer, securityHeaders, s.ownHostOnly, http.NewCrossOriginProtection().Handler, middleware.GetHead)
+	r.Use(s.recoverer, fresh, securityHeaders, s.ownHostOnly, http.NewCrossOriginProtection().Handler, middleware.GetHead)
 	r.NotFound(s.noSuchPage)
 	r.MethodNotAllowed(s.wrongMethod)
 	r.Get("/live/{session}", s.watch)
 	r.Mount("/static", web.Handler())
 	r.Group(func(r chi.Router) {
-		r.Use(inTime, fresh)
+		r.Use(inTime)
 		r.Get("/", s.start)
 		r.Get("/bench/{session}", s.bench)
 		r.Get("/open", s.open)
@@ -97,7 +94,8 @@ func inTime(next http.Handler) http.Handler {
 	})
 }
 
-// fresh keeps answers out of caches: they say what is the case now.
+// fresh keeps answers out of caches: they say what is the case now. Static files
+// say otherwise of themselves.
 func fresh(next http.Handler) http.Handler {
 	return http.HandlerFunc(func(w http.ResponseWriter, r *http.Request) {
 		w.Header().Set("Cache-Control", "no-store")

@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"context"
 	"encoding/json"
+	"errors"
 	"fmt"
 	"io"
 	"net/http"
@@ -36,7 +37,7 @@ func (s *server) page(w http.ResponseWriter, r *http.Request, status int, c temp
 }
 
 func (s *server) start(w http.ResponseWriter, r *http.Request) {
-	cards, err := s.gallery.cards()
+	cards, err := gallery()
 	if err != nil {
 		s.fail(w, r, err)
 		return
@@ -88,35 +89,21 @@ func briefView(parts []live.Part) []page.Part {
 	return out
 }
 
-// gallery is the cards of the shipped scenarios, each with a finished run drawn
-// on it. They are made once.
-type gallery struct {
-	once sync.Once
-	made []page.Card
-	err  error
-}
-
 // cardWidth is about how wide a card's drawing is on a page, in pixels.
 const cardWidth = 360
 
-func (g *gallery) cards() ([]page.Card, error) {
-	g.once.Do(func() {
-		all := scenarios.All()
-		g.made = make([]page.Card, len(all))
-		errs := make([]error, len(all))
-		var wg sync.WaitGroup
-		for i, e := range all {
-			wg.Go(func() { g.made[i], errs[i] = card(e) })
-		}
-		wg.Wait()
-		for _, err := range errs {
-			if err != nil {
-				g.err = err
-			}
-		}
-	})
-	return g.made, g.err
-}
+// gallery returns the cards of the shipped scenarios, each with a finished run
+// drawn on it. They are the same for every server and made once.
+var gallery = sync.OnceValues(func() ([]page.Card, error) {
+	all := scenarios.All()
+	cards, errs := make([]page.Card, len(all)), make([]error, len(all))
+	var wg sync.WaitGroup
+	for i, e := range all {
+		wg.Go(func() { cards[i], errs[i] = card(e) })
+	}
+	wg.Wait()
+	return cards, errors.Join(errs...)
+})
 
 func card(e scenarios.Entry) (page.Card, error) {
 	sc, err := scenario.Parse(e.Data)

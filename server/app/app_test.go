@@ -3,12 +3,21 @@ package app
 import (
 	"context"
 	"errors"
+	"log/slog"
 	"net"
 	"net/http"
 	"strings"
 	"testing"
 	"time"
 )
+
+// said is what a log says, line by line.
+type said chan string
+
+func (s said) Write(b []byte) (int, error) {
+	s <- string(b)
+	return len(b), nil
+}
 
 // start runs a server until the test or the returned stop ends it.
 func start(t *testing.T, c Config) (url string, stop func() error) {
@@ -67,16 +76,19 @@ func TestSessionsOutliveTheServerUntilTheyAreOld(t *testing.T) {
 		t.Fatal(err)
 	}
 	c.Now = func() time.Time { return time.Now().Add(keepFor + time.Hour) }
+	removed := make(said, 10)
+	c.Log = slog.New(slog.NewTextHandler(removed, nil))
 	url, _ = start(t, c)
-	gone := false
-	for range 200 { // pruning goes on beside
-		if gone = status(url) == http.StatusNotFound; gone {
-			break
+	select {
+	case line := <-removed:
+		if !strings.Contains(line, "old sessions removed") || !strings.Contains(line, "count=1") {
+			t.Error(line)
 		}
-		time.Sleep(10 * time.Millisecond)
+	case <-time.After(10 * time.Second):
+		t.Fatal("nothing was removed")
 	}
-	if !gone {
-		t.Error("a month later it is still there")
+	if got := status(url); got != http.StatusNotFound {
+		t.Errorf("a month later: %d", got)
 	}
 }
 

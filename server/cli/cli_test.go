@@ -64,7 +64,6 @@ func TestExitCodes(t *testing.T) {
 		{"run from standard input", open, "run -", 0, "arrived", ""},
 		{"run a link", "", "run " + link, 0, "arrived", ""},
 		{"run bare link data", "", "run " + link[strings.Index(link, "#")+1:], 0, "arrived", ""},
-		{"run shipped", "", "run shipped:crossing", 0, "arrived", ""},
 		{"run does not arrive", "", "run " + shutFile, 1, "Shut", ""},
 		{"run a bad file", "", "run " + badFile, 2, "", "bad.json:4:"},
 		{"run nothing", "", "run", 2, "", "accepts 1 arg"},

@@ -17,6 +17,9 @@ const fullOfEdits = "this run holds as many changes as a file may; restart it, a
 // receive does what a viewer wants.
 func (s *Session) receive(v *viewer, m *message) {
 	now := time.Now()
+	if s.speed > 0 {
+		s.advance(now) // the change is made in the run where it was made on the clock
+	}
 	switch m.Kind {
 	case "play":
 		s.play(now)
@@ -185,7 +188,14 @@ func (s *Session) refuse(v *viewer, about string, why error) {
 		text = strings.ReplaceAll(text, f.Path, "the "+f.Label) // viewers see the label, not the path
 	}
 	v.putNote(problem(about, text))
-	v.wantsHello, s.changed = true, true
+	s.putBack(v)
+}
+
+// putBack tells a viewer everything anew, soon, so that what it shows by its own
+// doing is shown as it is.
+func (s *Session) putBack(v *viewer) {
+	v.wantsHello, v.helloAt = true, time.Time{}
+	s.changed = true
 }
 
 // setNumber changes a number: in the running robot where that can be done.
@@ -237,7 +247,7 @@ func (s *Session) change(v *viewer, path string, set func(*scenario.Scenario) er
 		return
 	}
 	if string(sc.Print()) == string(before.Print()) {
-		v.wantsHello, s.changed = true, true
+		s.putBack(v)
 		return
 	}
 	if !s.beginOr(v, path, sc) {
@@ -253,6 +263,10 @@ func (s *Session) change(v *viewer, path string, set func(*scenario.Scenario) er
 func (s *Session) moveStart(v *viewer, at geom.Vec) {
 	sc := s.standing()
 	if sc.Start.X == at.X && sc.Start.Y == at.Y {
+		return
+	}
+	if !s.onFloor(at, at) {
+		s.refuse(v, "drag", errors.New("the start must be on the floor"))
 		return
 	}
 	sc.Start.X, sc.Start.Y = at.X, at.Y

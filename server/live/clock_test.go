@@ -204,6 +204,25 @@ func TestFailedSaveIsTriedAgain(t *testing.T) {
 	})
 }
 
+func TestSessionThatTheKeeperForgotIsSavedWhole(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newBench(t, room(t), Opening{})
+		v := b.join()
+		time.Sleep(time.Second)
+		synctest.Wait()
+		b.keep.mu.Lock()
+		delete(b.keep.saved, b.id)
+		b.keep.mu.Unlock()
+		b.say(v, `{"kind":"tick"}`)
+		time.Sleep(time.Second)
+		synctest.Wait()
+		kept, ok := b.keep.crashCopy().saved[b.id]
+		if !ok || kept.Tick != 1 || string(kept.Scenario) != string(b.text()) {
+			t.Errorf("kept: %v, tick %d", ok, kept.Tick)
+		}
+	})
+}
+
 func TestFullLabEndsTheOneUnseenLongest(t *testing.T) {
 	synctest.Test(t, func(t *testing.T) {
 		keep := &memory{}

@@ -1,6 +1,7 @@
 package live
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"time"
@@ -47,8 +48,7 @@ func (s *Session) receiveDrag(v *viewer, m *message) {
 	}
 	t, fault := s.thingOf(m)
 	if fault != "" {
-		v.putNote(problem("drag", fault))
-		v.wantsHello, s.changed = true, true
+		s.refuse(v, "drag", errors.New(fault))
 		return
 	}
 	g := s.grips[t]

@@ -205,7 +205,7 @@ func room(t testing.TB) *scenario.Scenario {
 				{"id": "desk", "corners_m": [[3, 2.5], [3.6, 2.5], [3.6, 3.6], [3, 3.6]]},
 				{"id": "post", "center_m": [6, 1.2], "radius_m": 0.2}],
 			"movers": [{"id": "cart", "radius_m": 0.2, "route_m": [[1, 5.4], [3, 5.4]], "speed_m_s": 0.3}]},
-		"start": {"x_m": 1, "y_m": 3}, "goal": {"x_m": 7, "y_m": 3}}`))
+		"start": {"x_m": 1, "y_m": 3}, "goal": {"x_m": 7, "y_m": 3, "radius_m": 0.3}}`))
 	if err != nil {
 		t.Fatal(err)
 	}

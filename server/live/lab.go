@@ -72,10 +72,12 @@ type Lab struct {
 func New(o Options) *Lab {
 	o.defaults()
 	ctx, cancel := context.WithCancel(context.Background())
-	return &Lab{
-		opt: o, ctx: ctx, cancel: cancel, saver: newSaver(o.Keeper, o.Log),
+	l := &Lab{
+		opt: o, ctx: ctx, cancel: cancel,
 		sessions: map[string]*Session{}, loading: map[string]chan struct{}{},
 	}
+	l.saver = newSaver(o.Keeper, o.Log, l.saveWhole)
+	return l
 }
 
 // goodbye is how long a closing lab waits for its viewers to hear of it.
@@ -253,6 +255,21 @@ func (l *Lab) load(ctx context.Context, id string) error {
 		return fmt.Errorf("session %s in the store cannot be read: %w", id, err)
 	}
 	return l.begin(ctx, sc, kept)
+}
+
+// saveWhole has a session saved with its text, which the keeper has forgotten:
+// it was open for so long that it was taken for an old one.
+func (l *Lab) saveWhole(id string) {
+	l.mu.Lock()
+	s := l.sessions[id]
+	l.mu.Unlock()
+	if s == nil {
+		return
+	}
+	go s.post(l.ctx, func() {
+		s.textKept = false
+		s.saveBy(time.Now())
+	})
 }
 
 // forget removes an ended session, so that whoever asks for it next loads it.

@@ -2,6 +2,7 @@ package live
 
 import (
 	"context"
+	"errors"
 	"log/slog"
 	"sync"
 	"time"
@@ -15,7 +16,8 @@ import (
 type saver struct {
 	keeper Keeper
 	log    *slog.Logger
-	wake   chan struct{} // of capacity 1
+	lost   func(id string) // called when the keeper has forgotten a session
+	wake   chan struct{}   // of capacity 1
 	done   chan struct{}
 
 	mu      sync.Mutex
@@ -28,8 +30,8 @@ type saver struct {
 // A write that takes longer has hung.
 const saveTimeout = 30 * time.Second
 
-func newSaver(k Keeper, log *slog.Logger) *saver {
-	v := &saver{keeper: k, log: log, wake: make(chan struct{}, 1), done: make(chan struct{}), waiting: map[string]store.Session{}}
+func newSaver(k Keeper, log *slog.Logger, lost func(id string)) *saver {
+	v := &saver{keeper: k, log: log, lost: lost, wake: make(chan struct{}, 1), done: make(chan struct{}), waiting: map[string]store.Session{}}
 	go v.loop()
 	return v
 }
@@ -87,7 +89,9 @@ func (v *saver) flush() {
 		ctx, cancel := context.WithTimeout(context.Background(), saveTimeout)
 		err := v.keeper.Save(ctx, s)
 		cancel()
-		if err != nil {
+		if errors.Is(err, store.ErrNotFound) {
+			v.lost(id)
+		} else if err != nil {
 			v.log.Error("a session was not saved", "session", s.ID, "error", err)
 			failed = append(failed, s)
 		}

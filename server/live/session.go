@@ -90,9 +90,7 @@ func newSession(l *Lab, sc *scenario.Scenario, kept store.Session) (*Session, er
 	if err := s.begin(sc); err != nil {
 		return nil, err
 	}
-	if !s.textKept {
-		s.saveBy(time.Now())
-	}
+	s.saveBy(time.Now()) // one that was loaded is not old any more
 	return s, nil
 }
 
