@@ -229,7 +229,7 @@ type Logic struct {
 	Start string `json:"start" form:"table" jsonschema:"required"`
 	// Sector is the half width of the sectors in which ahead, front, left and right look.
 	Sector float64 `json:"sector_deg" form:"table"`
-	// Margin that the hull's way straight to the goal is widened by on both sides.
+	// Margin: least clearance on either side of the hull that a way must have to count as free.
 	Margin float64 `json:"margin_m" form:"table"`
 	// Modes of the table.
 	Modes []Mode `json:"modes" form:"table" jsonschema:"required"`
