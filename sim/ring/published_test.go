@@ -128,8 +128,8 @@ func TestWallThroughTwoReadings(t *testing.T) {
 // mixture is the beam model of Thrun, Burgard & Fox, Probabilistic Robotics
 // §6.3, eqs 6.4–6.13, written down here from the book alone.
 type mixture struct {
-	echo, far, sigma, lambda          float64 // z*, z_max
-	hit, short, atFar, random, weight float64
+	echo, far, sigma, lambda  float64 // z*, z_max
+	hit, short, atFar, random float64
 }
 
 // density is p(z | z*) below z_max; at z_max it is the point mass there.

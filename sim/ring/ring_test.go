@@ -391,7 +391,7 @@ func TestZeroImperfectionsAreTheIdeal(t *testing.T) {
 }
 
 // TestMirroredWorld: a mirrored floor and pose give the mirrored readings, to the
-// bit, and with the same noise beam by beam for those that lie on the axis.
+// bit. The beam dead astern is left out: the float64 value of π is not quite π.
 func TestMirroredWorld(t *testing.T) {
 	const n = 24
 	c := Config{Bearings: Even(n), Mount: 0.19, Max: 6, Period: 1, SubRays: 3, Cone: 0.2, Noiseless: true}
