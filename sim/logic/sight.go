@@ -170,13 +170,13 @@ func (e *Engine) look(in *Input) {
 // update takes a new reading of beam i.
 func (s *sight) update(b *beam, in *Input, i int) {
 	scan := in.Scan
-	old := *b
+	was, looked := b.at, b.hit && b.tick >= 0
 	b.tick, b.hit = scan.Tick[i], scan.Hit[i]
 	if b.hit {
 		b.at = s.pos.Add(scan.Dir[i].Rotate(s.head.Y, s.head.X).Scale(scan.Mount + scan.Range[i]))
 	}
-	if s.wide && old.hit && old.tick >= 0 {
-		b.keep(old.at, in.Time)
+	if s.wide && looked {
+		b.keep(was, in.Time)
 	}
 }
 

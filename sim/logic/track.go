@@ -23,9 +23,10 @@ type track struct {
 	best        float64 // d_min
 	metDistance float64 // goal distance at the meeting
 	side        Side
-	met         bool // an obstacle has been met on the way to this goal
-	parted      bool // and left again
-	deceptions  int  // meetings in a row that brought no progress
+	met         bool    // an obstacle has been met on the way to this goal
+	parted      bool    // and left again
+	partedBest  float64 // d_min then
+	deceptions  int     // meetings in a row that brought no progress
 	loop        loop
 }
 
@@ -86,7 +87,7 @@ func (e *Engine) startMeeting() {
 func (e *Engine) meet(in *Input, m *Mode) {
 	t := &e.track
 	e.wall.known = false
-	best := t.best
+	best := t.partedBest
 	deceived := t.parted && t.distance > best-leastProgress
 	t.parted = false
 	if deceived {
@@ -106,7 +107,7 @@ func (e *Engine) meet(in *Input, m *Mode) {
 
 // part ends dealing with an obstacle.
 func (e *Engine) part(in *Input) {
-	e.track.parted = true
+	e.track.parted, e.track.partedBest = true, e.track.best
 }
 
 // loop finds out whether a boundary has been followed back to where it was met.
