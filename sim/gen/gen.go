@@ -182,7 +182,7 @@ func (s *Scene) sound() (bool, error) {
 	if !grown.Free(s.Start.Pos) || !grown.Free(s.Goal) {
 		return false, nil
 	}
-	roomy, err := reach.Shortest(s.Floor, s.Hull+s.Margin/2, s.Start.Pos, s.Goal, s.GoalRadius)
+	roomy, err := reach.Shortest(s.Floor, s.Hull+float64(s.Margin/2), s.Start.Pos, s.Goal, s.GoalRadius)
 	if err != nil || roomy.Reachable {
 		return err == nil, err
 	}

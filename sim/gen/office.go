@@ -85,9 +85,9 @@ func officeFor(segments int) office {
 
 // corner returns the corner at the back of a room, toward the left.
 func (f *office) corner(r room) geom.Vec {
-	p := geom.Vec{X: corridorWide + float64(float64(r.bay)*roomWide), Y: float64(r.corridor) * f.pitch()}
+	p := geom.Vec{X: corridorWide + float64(float64(r.bay)*roomWide), Y: float64(float64(r.corridor) * f.pitch())}
 	if r.above {
-		p.Y = float64(r.corridor+1) * f.pitch()
+		p.Y = float64(float64(r.corridor+1) * f.pitch())
 	}
 	return p
 }
@@ -101,7 +101,7 @@ func (r room) in() float64 {
 }
 
 func (f *office) middle(r room) geom.Vec {
-	return f.corner(r).Add(geom.Vec{X: roomWide / 2, Y: r.in() * roomDeep / 2})
+	return f.corner(r).Add(geom.Vec{X: roomWide / 2, Y: float64(r.in() * roomDeep / 2)})
 }
 
 // corridor puts up the rooms along one corridor, and the wall at their backs; it returns the number of segments.
@@ -114,12 +114,12 @@ func (d *draft) corridor(f *office, k int) (segments int) {
 		for b := range f.bays + 1 {
 			r := room{k, b, above}
 			back := f.corner(r)
-			front := back.Add(geom.Vec{Y: r.in() * roomDeep})
+			front := back.Add(geom.Vec{Y: float64(r.in() * roomDeep)})
 			wall(back, front)
 			if b == f.bays {
 				break
 			}
-			end := f.corner(room{k, b + 1, above}).Add(geom.Vec{Y: r.in() * roomDeep})
+			end := f.corner(room{k, b + 1, above}).Add(geom.Vec{Y: float64(r.in() * roomDeep)})
 			door := d.between(1, 1.3)
 			from := d.between(0.3, roomWide-door-0.3)
 			wall(front, front.Add(geom.Vec{X: from}))

@@ -56,10 +56,10 @@ func (d *draft) pocket() bool {
 
 // cup is a U whose arms differ in length.
 func (d *draft) cup(thick bool) floor.Solid {
-	w, deep := d.clear()/2+d.between(0.3, 1.5), d.between(0.8, 2.6)
-	x := deep / 2
+	w, deep := float64(d.clear()/2)+d.between(0.3, 1.5), d.between(0.8, 2.6)
+	x := float64(deep / 2)
 	left, right := -x, -x
-	if short := d.between(-0.5, 0.5) * deep; short < 0 {
+	if short := float64(d.between(-0.5, 0.5) * deep); short < 0 {
 		left -= short
 	} else {
 		right += short
@@ -80,7 +80,7 @@ func (d *draft) hook(thick bool) floor.Solid {
 	if d.chance(0.5) {
 		side = -1
 	}
-	x, y := deep/2, side*across/2
+	x, y := float64(deep/2), float64(side*across/2)
 	if !thick {
 		return floor.Solid{Kind: floor.Wall, Points: []geom.Vec{{X: x - deep, Y: y}, {X: x, Y: y}, {X: x, Y: -y}}}
 	}
@@ -92,7 +92,7 @@ func (d *draft) hook(thick bool) floor.Solid {
 // coil is a spiral of one turn: a corridor along its lower side leads into a chamber above.
 func (d *draft) coil() floor.Solid {
 	c := d.clear() + d.between(0.1, 0.5)
-	w, h := c*d.between(2.1, 3), c*d.between(2.1, 3)
+	w, h := float64(c*d.between(2.1, 3)), float64(c*d.between(2.1, 3))
 	points := []geom.Vec{{}, {X: w}, {X: w, Y: h}, {Y: h}, {Y: c}, {X: w - c, Y: c}}
 	if d.chance(0.5) { // the other hand
 		for i, p := range points {

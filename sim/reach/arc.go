@@ -145,7 +145,7 @@ func (w *circler) free(center geom.Vec, radius, grow float64) []stretch {
 		if to-from < sliver {
 			continue
 		}
-		free := w.isFree(center, radius, from+(to-from)/2)
+		free := w.isFree(center, radius, from+float64((to-from)/2))
 		switch {
 		case free && open:
 			w.out[len(w.out)-1].span = to - w.out[len(w.out)-1].start

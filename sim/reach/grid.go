@@ -85,7 +85,7 @@ func (q *prim) box(r float64) (lo, hi geom.Vec) {
 // cover calls f for every cell and every prim that may reach into it.
 func (g *grid) cover(prims []prim, hull float64, f func(k int, i int32)) {
 	// A cell is reached when its centre is within half its diagonal; the little extra absorbs rounding.
-	slack := g.cell * (math.Sqrt2/2 + 1e-6)
+	slack := float64(g.cell * (math.Sqrt2/2 + 1e-6))
 	for i := range prims {
 		q := &prims[i]
 		lo, hi := q.box(hull)

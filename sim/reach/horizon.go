@@ -172,9 +172,9 @@ func (h *horizon) hidden(n geom.Vec, t float64) bool {
 
 // hides reports whether a block of cells lies wholly beyond the horizon or off the arc's rays.
 func (h *horizon) hides(g *grid, level, col, row int) bool {
-	size := g.cell * float64(int(1)<<level)
-	half := size/2 + float64(g.cell*1e-6)
-	middle := geom.Vec{X: g.min.X + float64(float64(col)*g.cell) + size/2, Y: g.min.Y + float64(float64(row)*g.cell) + size/2}
+	reach := float64(g.cell * float64(int(1)<<level) / 2) // from a corner to the middle, along an axis
+	half := reach + float64(g.cell*1e-6)
+	middle := geom.Vec{X: g.min.X + float64(float64(col)*g.cell) + reach, Y: g.min.Y + float64(float64(row)*g.cell) + reach}
 	// Near blocks are never hidden: seen from them the corners stand in no simple order.
 	w := middle.Sub(h.a.center)
 	dx, dy := math.Max(0, math.Abs(w.X)-half), math.Max(0, math.Abs(w.Y)-half)

@@ -27,7 +27,7 @@ func (y *Yard) targets(to geom.Vec, goalRadius float64) []target {
 	w := newCircler(y)
 	var out []target
 	for _, f := range w.free(to, goalRadius, y.hull) {
-		middle := to.AddScaled(goalRadius, geom.Heading(f.start+f.span/2))
+		middle := to.AddScaled(goalRadius, geom.Heading(f.start+float64(f.span/2)))
 		if _, in := y.filling(middle); in {
 			continue // inside a polygon, far from its sides
 		}

@@ -66,7 +66,7 @@ func (y *Yard) build(c floor.Config) error {
 	return nil
 }
 
-func square(x float64) float64 { return x * x }
+func square(x float64) float64 { return float64(x * x) }
 
 // pointGap2 returns the squared distance of p to the segment from a to b.
 func pointGap2(p, a, b geom.Vec) float64 {
