@@ -381,7 +381,7 @@ func defaults() Scenario {
 			WheelSpeedMax: 14, WheelAccelMax: 40, WheelLag: 0.08, WheelDeadTime: 0.02,
 			Position: "dead_reckoning", EncoderCounts: 1024,
 			RightWheelScale: 1, LeftWheelScale: 1, TrackScale: 1, Slip: 0.00001,
-			FixNoise: 0.02, FixTurnNoise: 1,
+			FixEvery: 5, FixNoise: 0.02, FixTurnNoise: 1,
 			Steering: "heading_servo", SteeringGain: 3, SpeedLaw: "cosine", TurnBeyond: 60, LookAhead: 0.10,
 			Saturation: "keep_curve",
 		},
