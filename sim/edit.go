@@ -85,6 +85,7 @@ func (r *Run) revive(k EditKind) {
 		}
 		r.measures.Contacts = 0
 	}
+	r.idled += r.tick - r.ended
 	r.measures.Status, r.measures.Reason = Running, ""
 	r.engine.Reset(r.cfg.Logic)
 }

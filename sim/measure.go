@@ -111,7 +111,10 @@ func (r *Run) atRest() bool {
 	return math.Abs(v) < restSpeed && math.Abs(w) < restTurn
 }
 
-func (r *Run) end(s Status, reason string) { r.measures.Status, r.measures.Reason = s, reason }
+func (r *Run) end(s Status, reason string) {
+	r.measures.Status, r.measures.Reason = s, reason
+	r.ended = r.tick
+}
 
 func seconds(t float64) string { return fmt.Sprintf("%.1f s", t) }
 

@@ -26,6 +26,8 @@ type Run struct {
 	goal  geom.Vec
 	u     geom.Vec // wanted velocity, in the believed frame
 	since int64    // tick from which what is asked "within" counts
+	ended int64    // tick at which the run ended, if it has
+	idled int64    // ticks passed in ended states before the present one
 
 	edits []Edit
 	due   int // edits[:due] are done
@@ -124,11 +126,15 @@ func (r *Run) idealise() {
 	}
 }
 
-// Step goes on by one tick. It does nothing once the run has ended, unless an
-// edit that is due sets it going again.
+// Step goes on by one tick. Once the run has ended, ticks only pass, as in Idle,
+// while there are edits still to come that may set it going again; after the last
+// of them Step does nothing, and Tick stays.
 func (r *Run) Step() {
 	r.applyEdits()
 	if r.measures.Status != Running {
+		if r.Going() {
+			r.Idle()
+		}
 		return
 	}
 	r.moveMovers()
@@ -141,27 +147,47 @@ func (r *Run) Step() {
 	r.measure()
 }
 
+// Idle lets a tick pass in a run that has ended: the clock goes on and what moves
+// by itself moves, but nothing is measured. In a run that has not ended it does
+// nothing.
+func (r *Run) Idle() {
+	if r.measures.Status == Running {
+		return
+	}
+	r.world.Advance(float64(r.tick+1) * r.dt)
+	r.tick++
+	r.since++
+}
+
 // Finish steps until the run has ended and no edit is left to revive it, and
 // returns its outcome.
 func (r *Run) Finish() Outcome {
-	for {
+	for r.Going() {
 		r.Step()
-		if r.measures.Status != Running && !r.editDue() {
-			return r.Outcome()
-		}
 	}
+	return r.Outcome()
 }
+
+// Going reports whether a further Step would do anything: the run has not ended, or
+// there are edits still to come.
+func (r *Run) Going() bool { return r.measures.Status == Running || r.due < len(r.edits) }
 
 // Outcome returns the measures so far.
 func (r *Run) Outcome() Outcome {
 	o := r.measures
 	o.Ticks = r.tick
-	o.Time = r.time()
-	if r.tick > 0 {
-		o.Saturated = float64(r.saturated) / float64(r.tick)
+	if o.Status != Running {
+		o.Ticks = r.ended
+	}
+	o.Time = float64(o.Ticks) * r.dt
+	if driven := o.Ticks - r.idled; driven > 0 {
+		o.Saturated = float64(r.saturated) / float64(driven)
 	}
 	return o
 }
+
+// Status returns how the run stands.
+func (r *Run) Status() Status { return r.measures.Status }
 
 func (r *Run) time() float64 { return float64(r.tick) * r.dt }
 

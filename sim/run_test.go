@@ -126,6 +126,12 @@ func TestAMovedGoalRevivesTheRun(t *testing.T) {
 	if first.Status != sim.Arrived {
 		t.Fatal(first.Reason)
 	}
+	for range 400 {
+		r.Idle()
+	}
+	if again := r.Outcome(); again != first {
+		t.Errorf("idling changed the outcome: %+v", again)
+	}
 	if err := r.Edit(sim.Edit{Kind: sim.MoveGoal, Pos: geom.Vec{X: 1.2, Y: 1}}); err != nil {
 		t.Fatal(err)
 	}
