@@ -8,6 +8,7 @@ import (
 	"leeway/sim/geom"
 	"leeway/sim/logic"
 	"leeway/sim/ring"
+	"leeway/sim/steer"
 )
 
 // Run is one closed loop from its start to its Status.
@@ -82,10 +83,10 @@ func NewOn(m *floor.Map, c Config) (*Run, error) {
 	r.edits = append(r.edits, c.Edits...)
 	r.idealise()
 	r.ring = ring.New(r.cfg.Ring, c.Seed)
-	r.drive = drive.New(r.cfg.Drive, c.Tick, c.Seed, c.Start)
+	r.drive = drive.New(r.cfg.Drive, c.Tick, c.Seed, r.pose)
 	r.engine = logic.New(c.Logic)
 	r.input = logic.Input{GoalRadius: c.GoalRadius, Hull: c.Hull, Scan: r.ring.Scan()}
-	if r.cfg.Steer.Rule == steerLookAhead {
+	if r.cfg.Steer.Rule == steer.LookAhead && r.cfg.Drive.Model != drive.Point {
 		r.input.Ahead = r.cfg.Steer.Ahead
 	}
 	for _, mv := range c.Floor.Movers {
@@ -104,6 +105,10 @@ func (r *Run) idealise() {
 	c := &r.cfg
 	if c.Ideal&PointMotion != 0 {
 		c.Drive.Model = drive.Point
+		if c.Steer.Rule == steer.LookAhead {
+			// The point that the plan is for is the one ahead of the axle.
+			r.pose.Pos = r.pose.Pos.AddScaled(c.Steer.Ahead, geom.Heading(r.pose.Theta))
+		}
 	}
 	if c.Ideal&NoWheelLimits != 0 {
 		c.Drive.MaxWheelSpeed, c.Drive.MaxWheelAccel, c.Steer.MaxWheelSpeed = 0, 0, 0

@@ -4,10 +4,7 @@ import (
 	"leeway/sim/drive"
 	"leeway/sim/floor"
 	"leeway/sim/geom"
-	"leeway/sim/steer"
 )
-
-const steerLookAhead = steer.LookAhead
 
 // maxLogged bounds the lists of switches and contacts: a chattering design
 // fills them within minutes, and the counts go on without them.
@@ -69,7 +66,7 @@ func (r *Run) steer() drive.Wheels {
 	if r.cfg.Drive.Model == drive.Point {
 		return drive.Wheels{}
 	}
-	v, omega := r.cfg.Steer.Twist(r.u, r.drive.Estimate().Theta)
+	v, omega := r.cfg.Steer.TwistOver(r.u, r.drive.Estimate().Theta, r.dt)
 	w, limited := r.cfg.Steer.Wheels(v, omega)
 	if limited {
 		r.saturated++

@@ -186,25 +186,28 @@ func TestResample(t *testing.T) {
 	}
 }
 
-// The look-ahead rule, unsaturated: on an empty floor the robot's plan point is a
-// point robot, so the axle stays the look-ahead distance from the shadow; after C-03 (derived).
+// The look-ahead rule, unsaturated: the robot's point ahead moves exactly as the
+// point robot does, so the axle is always the look-ahead distance from the shadow
+// (after C-03,
+// derived). On an empty floor, until they arrive.
 func TestLookAheadKeepsItsDistance(t *testing.T) {
-	c := robot()
-	c.Floor = floor.Config{}
-	c.Drive = drive.Config{Model: drive.Unicycle, WheelRadius: 0.05, Track: 0.3}
-	c.Steer.Rule, c.Steer.MaxWheelSpeed = steer.LookAhead, 0
-	c.Ideal = sim.TruePosition
-	c.Start.Theta = 1.2
-	s := newSet(t, c)
-	worst := 0.0
-	for !s.Done() && s.Run(shadow.Robot).Status() == sim.Running {
-		s.Step()
-		r := s.Run(shadow.Robot).Pose()
-		p := r.Pos.Add(geom.Heading(r.Theta).Scale(c.Steer.Ahead))
-		worst = max(worst, math.Abs(p.Sub(r.Pos).Norm()-c.Steer.Ahead))
-	}
-	if worst > 1e-12 {
-		t.Errorf("axle and plan point come %g m from the look-ahead distance", worst)
+	for _, theta := range []float64{0, 1.2, -2.8} {
+		c := robot()
+		c.Floor = floor.Config{}
+		c.Drive = drive.Config{Model: drive.Unicycle, WheelRadius: 0.05, Track: 0.3}
+		c.Steer.Rule, c.Steer.MaxWheelSpeed = steer.LookAhead, 0
+		c.Ideal = sim.TruePosition
+		c.Start.Theta = theta
+		s := newSet(t, c)
+		worst := 0.0
+		for s.Run(shadow.Robot).Engine().Mode() == c.Logic.Start {
+			s.Step()
+			d := s.Run(shadow.Robot).Pose().Pos.Sub(s.Run(shadow.Point).Pose().Pos).Norm()
+			worst = max(worst, math.Abs(d-c.Steer.Ahead))
+		}
+		if worst > 1e-6 || s.Tick() < 1000 {
+			t.Errorf("start %g rad: within %d ticks axle and point come %g m from the look-ahead distance", theta, s.Tick(), worst)
+		}
 	}
 }
 
