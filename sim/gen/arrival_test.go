@@ -148,14 +148,16 @@ func tally(t *testing.T, what string, outcomes []outcome, listed int) (n result)
 }
 
 func TestDefaultLogicArrives(t *testing.T) {
-	each := 250
+	// What is asked is 99 % of 1,000 floors. On the 200 of a short test two
+	// failures more or less decide about one per cent, so that it asks for less.
+	each, share := 250, 99
 	if testing.Short() {
-		each = 50
+		each, share = 50, 97
 	}
 	scenes := floors(t, each)
 	n := tally(t, "point robot with ideal sight", drive(t, scenes, point), 1000)
-	if 100*n.arrived < 99*n.feasible {
-		t.Errorf("the point robot arrived on %d of %d floors with a way, less than 99 %%", n.arrived, n.feasible)
+	if 100*n.arrived < share*n.feasible {
+		t.Errorf("the point robot arrived on %d of %d floors with a way, less than %d %%", n.arrived, n.feasible, share)
 	}
 	if n.gaveUp < n.closed {
 		t.Errorf("the point robot gave up on %d of %d floors without a way", n.gaveUp, n.closed)
@@ -165,5 +167,4 @@ func TestDefaultLogicArrives(t *testing.T) {
 	}
 	// How the machine with its sparse, noisy ring and its drift does is told, not held.
 	tally(t, "default robot", drive(t, scenes, robot), 5)
-	tally(t, "default robot that knows its pose", drive(t, scenes, sim.TruePosition), 5)
 }

@@ -98,6 +98,22 @@ func TestAroundTheEndOfOneWall(t *testing.T) {
 	close(t, "grazing", r.Length, 6, 1e-12)
 }
 
+// A goal disc that pokes through a wall: the way runs along the wall and ends
+// where the goal circle comes out of what the hull cannot enter.
+func TestGoalDiscBehindAWall(t *testing.T) {
+	c := on(wall(geom.Vec{X: -20}, geom.Vec{X: 20}))
+	r := ask(t, c, 0.2, geom.Vec{X: 3, Y: 0.2}, geom.Vec{Y: -0.1}, 0.35)
+	close(t, "along the wall", r.Length, 3-math.Sqrt(0.35*0.35-0.3*0.3), 1e-9)
+	// From straight above the goal circle is met head-on.
+	r = ask(t, c, 0.2, geom.Vec{Y: 3}, geom.Vec{Y: -0.1}, 0.35)
+	close(t, "from above", r.Length, 3.1-0.35, 1e-12)
+	// A goal disc that does not reach through is to be entered from below, round the end.
+	r = ask(t, c, 0.2, geom.Vec{X: 3, Y: 0.2}, geom.Vec{Y: -0.4}, 0.35)
+	if !r.Reachable || r.Length < 37 {
+		t.Errorf("round the end of the wall: %v %g m", r.Reachable, r.Length)
+	}
+}
+
 // Two bitangents, each kind: about two discs on the same side (outer), and between them (inner).
 func TestBitangents(t *testing.T) {
 	c := on(disc(0, 0, 0.3), disc(4, 0, 0.3), wall(geom.Vec{X: 0, Y: 0}, geom.Vec{X: 0, Y: -50}), wall(geom.Vec{X: 4, Y: 0}, geom.Vec{X: 4, Y: 50}))
