@@ -45,7 +45,7 @@ func TestConfigOfDefaults(t *testing.T) {
 		}},
 		Hull: 0.21, Start: geom.Pose{Pos: geom.Vec{X: 1, Y: 1}},
 		Drive: drive.Config{Model: drive.TwoWheels, WheelRadius: 0.05, Track: 0.3, MaxWheelSpeed: 14, MaxWheelAccel: 40, Lag: 0.08, DeadTime: 0.02,
-			DeadReckoning: true, CountsPerTurn: 1024, RightScale: 1, LeftScale: 1, TrackScale: 1, Slip: 0.00001, FixNoise: 0.02, FixTurnNoise: math.Pi / 180},
+			DeadReckoning: true, CountsPerTurn: 1024, RightScale: 1, LeftScale: 1, TrackScale: 1, Slip: 0.00001, FixEvery: 5, FixNoise: 0.02, FixTurnNoise: math.Pi / 180},
 		Steer: steer.Config{Rule: steer.HeadingServo, Gain: 3, Speed: steer.CosineSpeed, TurnBeyond: math.Pi / 3, Ahead: 0.1, Saturation: steer.KeepCurve,
 			WheelRadius: 0.05, Track: 0.3, MaxWheelSpeed: 14},
 		Speed: 0.45, Goal: geom.Vec{X: 11, Y: 7}, GoalRadius: 0.15,

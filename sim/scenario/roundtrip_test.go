@@ -144,8 +144,7 @@ func TestPrintLeavesOutDerivedNumbers(t *testing.T) {
 }
 
 func TestGeneratedIDs(t *testing.T) {
-	s := mustParse(t, extended(`"ring": {}`))
-	s = mustParse(t, `{"leeway": 1, "floor": {"width_m": 12, "height_m": 8,
+	s := mustParse(t, `{"leeway": 1, "floor": {"width_m": 12, "height_m": 8,
 		"walls": [{"points_m": [[2, 2], [3, 2]]}, {"id": "w1", "points_m": [[2, 3], [3, 3]]}, {"points_m": [[2, 4], [3, 4]]}, {"id": "w2", "points_m": [[2, 5], [3, 5]]}],
 		"solids": [{"id": "m1", "center_m": [5, 5], "radius_m": 0.1}, {"center_m": [6, 5], "radius_m": 0.1}],
 		"movers": [{"radius_m": 0.1, "route_m": [[8, 5]]}]},
