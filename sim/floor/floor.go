@@ -19,10 +19,11 @@
 // A person may move any solid or mover while a run goes on ([World.MoveSolid],
 // [World.MoveMover]); other worlds of the same map know nothing of it.
 //
-// Answers do not depend on the index: each is the least over the primitives (wall pieces, polygon
-// edges, discs) of a function of one primitive, ties going to the thing that comes first
-// in the Config, solids before movers. The index only leaves out what cannot be the least. So a
-// floor answers with the same bits whether a solid stood there from the beginning or was moved there.
+// Answers do not depend on the index: each is the least over the primitives (wall pieces,
+// polygon edges, discs) of a function of one primitive, ties going to the thing that comes
+// first in the Config, solids before movers. The index only leaves out what cannot be the
+// least. So a floor answers with the same bits whether a solid stood there from the beginning
+// or was moved there.
 //
 // # Caveats
 //
@@ -32,10 +33,17 @@
 //
 // A World belongs to one goroutine; a Map to all.
 //
-// A ray or a point near a filled polygon asks all of that polygon's edges whether it is inside, so
-// a polygon of hundreds of corners costs more nearby than the same outline made of walls.
+// A ray or a point near a filled polygon asks all of that polygon's edges whether it is inside,
+// so a polygon of hundreds of corners costs more nearby than the same outline made of walls.
 //
-// All lengths are metres. Coordinates beyond [Limit] are refused, so that rounding stays well below [Skin].
+// All lengths are metres. Coordinates beyond [Limit] are refused, so that rounding stays well
+// below [Skin].
+//
+// # Reading the source
+//
+// world.go says what a world is, map.go and check.go how a floor is made and refused,
+// timetable.go where movers are. Questions: cast.go (rays), nearest.go, sweep.go and touch.go
+// (contact). Indices: grid.go (what reaches into a cell) and sight.go (what a ray from a cell may meet).
 package floor
 
 import "leeway/sim/geom"

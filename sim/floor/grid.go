@@ -61,15 +61,15 @@ func newFrame(lo, hi geom.Vec, size float64) frame {
 	return f
 }
 
-// extent returns the rectangle that holds all solids, a little wider.
-func (m *Map) extent() (lo, hi geom.Vec) {
-	if len(m.solids) == 0 {
+// extentOf returns the rectangle that holds all the solids, a little wider.
+func extentOf(solids []Solid) (lo, hi geom.Vec) {
+	if len(solids) == 0 {
 		return geom.Vec{}, geom.Vec{}
 	}
 	lo = geom.Vec{X: math.Inf(1), Y: math.Inf(1)}
 	hi = geom.Vec{X: math.Inf(-1), Y: math.Inf(-1)}
-	for i := range m.solids {
-		s := &m.solids[i]
+	for i := range solids {
+		s := &solids[i]
 		r := 2 * pad
 		if s.Kind == Disc {
 			r += s.Radius
@@ -111,12 +111,16 @@ func (f *frame) span(lo, hi geom.Vec) (x0, y0, x1, y1 int, ok bool) {
 }
 
 func newGrid(m *Map) grid {
-	lo, hi := m.extent()
+	lo, hi := extentOf(m.solids)
 	n := float64(len(m.segs) + len(m.discs) + 1)
 	w, h := hi.X-lo.X, hi.Y-lo.Y
 	// Some cells a primitive, so that a cell holds one or two; never finer than a
-	// hull, and never more cells in a row than the count allows (a long thin floor).
+	// hull, never more cells in a row than the count allows (a long thin floor), and
+	// coarser where large things would fill too many of them.
 	size := max(math.Sqrt(w*h/(cellsPerPrimitive*n)), max(w, h)/(cellsPerPrimitive*n), finestCell)
+	for size < max(w, h) && m.entries(0, size) > mostEntries {
+		size *= 2
+	}
 	g := grid{frame: newFrame(lo, hi, size)}
 	g.items = collect(g.nx*g.ny, func(put func(int, int32)) {
 		for i, s := range m.segs {
@@ -143,8 +147,32 @@ func (m *Map) polygonsUnder(f *frame) lists {
 
 const (
 	cellsPerPrimitive = 8
-	finestCell        = 0.25 // metres
+	finestCell        = 0.25      // metres
+	mostEntries       = 2_000_000 // in the lists of an index: a bound on its memory and on the time to build it
 )
+
+// entries estimates from above in how many cells of the given size the primitives and the filled
+// polygons are entered, each thickened by reach.
+func (m *Map) entries(reach, size float64) float64 {
+	wide := 2 * reach
+	cells := func(along, across float64) float64 {
+		return ((along+wide)/size + 2) * ((across+wide)/size + 2)
+	}
+	sum := 0.0
+	for _, s := range m.segs {
+		sum += cells(s.B.Sub(s.A).Norm(), 0)
+	}
+	for _, d := range m.discs {
+		sum += cells(2*d.Radius, 2*d.Radius)
+	}
+	for i := range m.solids {
+		if m.solids[i].Kind == Polygon {
+			lo, hi := extentOf(m.solids[i : i+1])
+			sum += cells(hi.X-lo.X, hi.Y-lo.Y)
+		}
+	}
+	return sum
+}
 
 // rowBand returns the heights between which row y lies, padded.
 func (f *frame) rowBand(y int) (lo, hi float64) {
@@ -200,7 +228,7 @@ func (f *frame) underPolygon(g geom.Polygon, visit func(cell int)) {
 		for i := range g {
 			e := g.Edge(i)
 			if (e.A.Y > mid) != (e.B.Y > mid) {
-				cut = append(cut, e.A.X+(e.B.X-e.A.X)*((mid-e.A.Y)/(e.B.Y-e.A.Y)))
+				cut = append(cut, e.A.X+float64((e.B.X-e.A.X)*((mid-e.A.Y)/(e.B.Y-e.A.Y))))
 			}
 		}
 		slices.Sort(cut)

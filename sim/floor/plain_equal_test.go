@@ -172,3 +172,56 @@ func TestMovedAsIfItStoodThere(t *testing.T) {
 		}
 	}
 }
+
+// A mirrored floor gives mirrored answers, to the bit.
+func TestMirrored(t *testing.T) {
+	touches := 0
+	for seed := int64(1); seed < 120; seed += 2 { // off the lattice, where nothing ties
+		c := clutter(seed, 15, 2)
+		for _, m := range []func(geom.Vec) geom.Vec{
+			func(p geom.Vec) geom.Vec { return geom.Vec{X: p.X, Y: -p.Y} },
+			func(p geom.Vec) geom.Vec { return geom.Vec{X: -p.X, Y: p.Y} },
+		} {
+			var mirrored Config
+			for _, s := range c.Solids {
+				s.Points = append([]geom.Vec(nil), s.Points...)
+				for k := range s.Points {
+					s.Points[k] = m(s.Points[k])
+				}
+				mirrored.Solids = append(mirrored.Solids, s)
+			}
+			for _, v := range c.Movers {
+				v.Heading = -v.Heading // a box looks the same turned by half a turn
+				v.Route = append([]geom.Vec(nil), v.Route...)
+				for k := range v.Route {
+					v.Route[k] = m(v.Route[k])
+				}
+				mirrored.Movers = append(mirrored.Movers, v)
+			}
+			a, b := build(t, c, 3).NewWorld(), build(t, mirrored, 3).NewWorld()
+			a.Advance(2.5)
+			b.Advance(2.5)
+			r := newDice(seed + 5000)
+			for range 60 {
+				p, d := geom.Vec{X: r.between(0, 8), Y: r.between(0, 8)}, geom.Heading(r.span(math.Pi))
+				var x, y [1]float64
+				a.Cast([]Ray{{p, d}}, 4, x[:])
+				b.Cast([]Ray{{m(p), m(d)}}, 4, y[:])
+				na, oka := a.Nearest(p, 2)
+				nb, okb := b.Nearest(m(p), 2)
+				ea, ca, ta := a.Sweep(p, d, 0.2)
+				eb, cb, tb := b.Sweep(m(p), m(d), 0.2)
+				if x != y || oka != okb || na.Distance != nb.Distance || na.Ref != nb.Ref || na.Point != m(nb.Point) ||
+					ea != m(eb) || ta != tb || ca.At != cb.At || ca.Point != m(cb.Point) || ca.Normal != m(cb.Normal) || ca.Ref != cb.Ref {
+					t.Fatalf("from %v along %v: %v %+v %v %+v; mirrored %v %+v %v %+v", p, d, x, na, ea, ca, y, nb, eb, cb)
+				}
+				if ta {
+					touches++
+				}
+			}
+		}
+	}
+	if touches < 1000 {
+		t.Fatalf("only %d touches", touches)
+	}
+}

@@ -50,10 +50,14 @@ func moverThing(w *World, i int) thing {
 		t.kind, t.disc = Disc, geom.Disc{Center: at, Radius: mv.Radius}
 		return t
 	}
-	sin, cos := geom.Sincos(mv.Heading)
+	sin, cos := geom.Sincos(math.Abs(mv.Heading))
 	var g geom.Polygon
 	for _, c := range []geom.Vec{{X: mv.Half.X, Y: mv.Half.Y}, {X: -mv.Half.X, Y: mv.Half.Y}, {X: -mv.Half.X, Y: -mv.Half.Y}, {X: mv.Half.X, Y: -mv.Half.Y}} {
-		g = append(g, at.Add(c.Rotate(sin, cos)))
+		c = c.Rotate(sin, cos)
+		if mv.Heading < 0 {
+			c.Y = -c.Y
+		}
+		g = append(g, at.Add(c))
 	}
 	for k := range g {
 		t.edges = append(t.edges, g.Edge(k))
@@ -191,12 +195,14 @@ func (f plain) path(p, d geom.Vec, radius float64) ([]geom.Vec, Contact, bool) {
 	var lastCore geom.Segment
 	var lastThick float64
 	for i := range slides {
-		at, best, core, thick := math.Inf(1), -1, geom.Segment{}, 0.0
+		at, near, best, core, thick := math.Inf(1), math.Inf(1), -1, geom.Segment{}, 0.0
 		for i := range f.things {
 			t := &f.things[i]
 			if t.kind == Disc {
-				if k, ok := geom.DiscTouchesDisc(p, rest, radius+Skin, t.disc); ok && k < at {
-					at, best, core, thick = k, i, geom.Segment{A: t.disc.Center, B: t.disc.Center}, t.disc.Radius
+				if k, ok := geom.DiscTouchesDisc(p, rest, radius+Skin, t.disc); ok {
+					if apart := geom.DistanceToDisc(p, t.disc); k < at || k == at && apart < near {
+						at, near, best, core, thick = k, apart, i, geom.Segment{A: t.disc.Center, B: t.disc.Center}, t.disc.Radius
+					}
 				}
 				continue
 			}
@@ -204,8 +210,10 @@ func (f plain) path(p, d geom.Vec, radius float64) ([]geom.Vec, Contact, bool) {
 				continue
 			}
 			for _, e := range t.edges {
-				if k, ok := geom.DiscTouchesSegment(p, rest, radius+Skin, e); ok && k < at {
-					at, best, core, thick = k, i, e, 0
+				if k, ok := geom.DiscTouchesSegment(p, rest, radius+Skin, e); ok {
+					if apart := geom.FromSegment(p, e).Norm(); k < at || k == at && apart < near {
+						at, near, best, core, thick = k, apart, i, e, 0
+					}
 				}
 			}
 		}
@@ -241,7 +249,11 @@ func (f plain) path(p, d geom.Vec, radius float64) ([]geom.Vec, Contact, bool) {
 		if _, now := f.things[i].boundary(p); now > e+Skin && f.things[i].inside(p) {
 			p = start
 			if q, _ := f.things[i].boundary(p); !touched {
-				c, touched = Contact{Point: q, Normal: q.Sub(p).Unit(), Ref: f.things[i].ref}, true
+				n := q.Sub(p).Unit()
+				if n == (geom.Vec{}) {
+					n = d.Unit().Scale(-1)
+				}
+				c, touched = Contact{Point: q, Normal: n, Ref: f.things[i].ref}, true
 			}
 			break
 		}

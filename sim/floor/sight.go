@@ -14,7 +14,8 @@ import (
 // meet within reach: nearly always a handful, and they are known without walking there.
 //
 // The primitives in reach of a cell form one list, nearest first, each with a lower bound of
-// its distance from anywhere in the cell, so that a ray need not look at the far end of a long list. Which of them a sector can meet is a row of bits over that list.
+// its distance from anywhere in the cell, so that a ray need not look at the far end of a
+// long list. Which of them a sector can meet is a row of bits over that list.
 type sight struct {
 	frame
 	reach float64 // how far the lists go; 0 when there are none
@@ -43,8 +44,7 @@ const (
 	sectors = 32 // a power of two
 
 	// mostCells bounds the number of cells, and crowd the mean length of their lists: on a floor
-	// with more to see the lists end earlier, and a ray walks on from there. Together they hold the index
-	// to some tens of megabytes and well below a second of building.
+	// with more to see the lists end earlier, and a ray walks on from there.
 	mostCells = 50_000
 	crowd     = 48
 )
@@ -61,13 +61,18 @@ func newSight(m *Map, reach float64) sight {
 	lo, hi := m.grid.min, m.grid.max
 	w, h := hi.X-lo.X, hi.Y-lo.Y
 	n := float64(len(m.segs) + len(m.discs))
-	// A circle of this radius holds about crowd primitives.
-	far := math.Sqrt(crowd * w * h / (math.Pi * max(n, 1)))
-	s := sight{reach: min(reach, far)}
-	if !(s.reach > 0) || n == 0 {
+	reach = min(reach, w+h)
+	if !(reach > 0) || n == 0 {
 		return sight{}
 	}
-	size := max(s.reach/4, math.Sqrt(w*h/mostCells), max(w, h)/mostCells)
+	// A circle of this radius holds about crowd primitives.
+	far := math.Sqrt(crowd * (w + reach) * (h + reach) / (math.Pi * n))
+	s := sight{reach: min(reach, far)}
+	cells := min(cellsPerPrimitive*n+512, mostCells)
+	size := max(s.reach/4, math.Sqrt(w*h/cells), max(w, h)/cells, finestCell)
+	for size < max(w, h) && m.entries(s.reach, size) > mostEntries {
+		size *= 2
+	}
 	s.frame = newFrame(lo, hi, size)
 	s.fills = m.polygonsUnder(&s.frame)
 	g := gatherer{m: m, stamp: make([]int32, len(m.segs)+len(m.discs))}
@@ -100,7 +105,7 @@ type box struct{ lo, hi geom.Vec }
 // box returns cell (x, y), padded.
 func (f *frame) box(x, y int) box {
 	lo := geom.Vec{X: f.min.X + float64(float64(x)*f.size) - pad, Y: f.min.Y + float64(float64(y)*f.size) - pad}
-	return box{lo, geom.Vec{X: lo.X + f.size + 2*pad, Y: lo.Y + f.size + 2*pad}}
+	return box{lo, lo.Add(geom.Vec{X: f.size + 2*pad, Y: f.size + 2*pad})}
 }
 
 func (b box) corners() [4]geom.Vec {
@@ -130,7 +135,8 @@ func (b box) segmentDistance(s geom.Segment) float64 {
 	return d
 }
 
-// view is a primitive as it may be seen from a cell: in the sectors from … to, to ≥ from, counted on past the last.
+// view is a primitive as it may be seen from a cell: in the sectors from … to, where to ≥ from
+// counts on past the last.
 type view struct {
 	seen
 	from, to int
@@ -187,7 +193,7 @@ func (g *gatherer) add(b box, s geom.Segment, r float64, item int32, reach float
 	if d > 2*pad {
 		v.low = float32((d - pad) * (1 - 1e-6)) // also after rounding to 24 bits
 	}
-	if apart > math.Sqrt2*r+2*pad {
+	if apart > float64(math.Sqrt2*r)+2*pad {
 		v.from, v.to = directions(b, s, r)
 	}
 	g.list = append(g.list, v)

@@ -28,7 +28,8 @@ const (
 // A hull that starts by overlapping may move out but not further in.
 // It never passes through anything, however fast. Touching (within Skin) is not overlapping.
 //
-// Where nothing is touched the end is p.Add(d), to the bit. Numbers that are not finite, and
+// Where nothing is touched the end is p.Add(d), to the bit. Of several things touched at once
+// the one that the hull is deepest in counts as the first. Numbers that are not finite, and
 // places farther than 10·Limit from the origin, move nothing.
 func (w *World) Sweep(p, d geom.Vec, radius float64) (end geom.Vec, c Contact, touched bool) {
 	return w.slide(p, d, radius, everything)
@@ -79,16 +80,16 @@ func (w *World) slide(p, d geom.Vec, radius float64, at target) (end geom.Vec, c
 	var in covers
 	w.cover(&in, p, at)
 	if in.n > 0 {
-		var k int
-		if d, k = in.outward(p, d); k >= 0 {
-			c, touched = in.contact(k, p, w.m), true
+		if out, k := in.outward(p, d); k >= 0 {
+			c, touched = in.contact(k, p, d, w.m), true
+			d = out
 		}
 	}
 	// What is left of the motion as it was wanted, and as bent along what was touched last.
 	left, bent := d, d
 	var last touch
 	for i := range slides {
-		h := touch{at: math.Inf(1), owner: math.MaxInt32}
+		h := touch{at: math.Inf(1), apart: math.Inf(1)}
 		w.firstTouch(&h, p, bent, reach, at, &in)
 		if !(h.at <= 1) {
 			p = p.Add(bent)
@@ -114,7 +115,7 @@ func (w *World) slide(p, d geom.Vec, radius float64, at target) (end geom.Vec, c
 		if k := in.deeper(p); k >= 0 {
 			p = start
 			if !touched {
-				c, touched = in.contact(k, p, w.m), true
+				c, touched = in.contact(k, p, d, w.m), true
 			}
 		}
 	}
@@ -131,8 +132,9 @@ func bend(d, n geom.Vec, gap float64) geom.Vec {
 	return d.AddScaled(out, n)
 }
 
-// wedged reports whether a motion along one surface leads into the one touched before, which the hull at p still
-// touches: along that one the way led into this one, so between the two there is none.
+// wedged reports whether a motion along one surface leads into the one touched before, which
+// the hull at p still touches: along that one the way led into this one, so between the two
+// there is none.
 func wedged(last *touch, p geom.Vec, radius float64, d geom.Vec) bool {
 	n, gap := last.from(p, radius)
 	return gap <= 2*Skin && d.Dot(n) < -flat*d.Norm()

@@ -26,9 +26,15 @@ func newTimetable(m Mover) timetable {
 	m.Route = append([]geom.Vec(nil), m.Route...)
 	tt := timetable{Mover: m}
 	if m.Radius == 0 {
-		sin, cos := geom.Sincos(m.Heading)
+		// Turned to the right, the corners are those of the box turned to the left,
+		// mirrored: then a mirrored floor has the same edges in every bit.
+		sin, cos := geom.Sincos(math.Abs(m.Heading))
 		for _, c := range [4]geom.Vec{{X: 1, Y: 1}, {X: -1, Y: 1}, {X: -1, Y: -1}, {X: 1, Y: -1}} {
-			tt.corners = append(tt.corners, geom.Vec{X: c.X * m.Half.X, Y: c.Y * m.Half.Y}.Rotate(sin, cos))
+			p := geom.Vec{X: c.X * m.Half.X, Y: c.Y * m.Half.Y}.Rotate(sin, cos)
+			if m.Heading < 0 {
+				p.Y = -p.Y
+			}
+			tt.corners = append(tt.corners, p)
 		}
 	}
 	n := len(m.Route)

@@ -17,15 +17,20 @@ const (
 // touch is the first contact found so far.
 type touch struct {
 	at    float64
+	apart float64 // how far the surface was from the hull's centre at the start
 	owner int32
 	piece int32
 	core  geom.Segment // the primitive: a segment, or the centre of a disc twice
 	thick float64      // and its radius
 }
 
-// before reports whether a touch comes first; ties go to the lower owner and piece, whatever the order of asking.
-func (h *touch) before(at float64, owner, piece int32) bool {
-	return at < h.at || at == h.at && (owner < h.owner || owner == h.owner && piece < h.piece)
+// takes keeps t if it comes before h, whatever the order of asking. Of several surfaces that are
+// touched from the start the one that the hull is deepest in counts, then the lower owner and piece.
+func (h *touch) takes(t touch) {
+	if t.at < h.at || t.at == h.at && (t.apart < h.apart ||
+		t.apart == h.apart && (t.owner < h.owner || t.owner == h.owner && t.piece < h.piece)) {
+		*h = t
+	}
 }
 
 // from returns the unit vector from the touched surface to a hull at p, and the gap between them.
@@ -93,19 +98,21 @@ func (b *body) touch(h *touch, m *reaching, in *covers) {
 }
 
 func (h *touch) segment(m *reaching, s geom.Segment, owner, piece int32, in *covers) {
-	if geom.FromSegment(m.p, s).Norm2() > float64(m.far*m.far) {
+	sq := geom.FromSegment(m.p, s).Norm2()
+	if sq > float64(m.far*m.far) {
 		return
 	}
 	t, ok := geom.DiscTouchesSegment(m.p, m.d, m.r, s)
-	if ok && h.before(t, owner, piece) && !in.has(owner) {
-		*h = touch{t, owner, piece, s, 0}
+	if ok && t <= h.at && !in.has(owner) {
+		h.takes(touch{t, math.Sqrt(sq), owner, piece, s, 0})
 	}
 }
 
 func (h *touch) disc(m *reaching, d geom.Disc, owner int32) {
 	t, ok := geom.DiscTouchesDisc(m.p, m.d, m.r, d)
-	if ok && h.before(t, owner, 0) {
-		*h = touch{t, owner, 0, geom.Segment{A: d.Center, B: d.Center}, d.Radius}
+	if ok && t <= h.at {
+		apart := geom.DistanceToDisc(m.p, d)
+		h.takes(touch{t, apart, owner, 0, geom.Segment{A: d.Center, B: d.Center}, d.Radius})
 	}
 }
 
@@ -161,10 +168,14 @@ func (c *covers) add(edges []geom.Segment, owner int32, p geom.Vec) {
 	c.n = min(c.n+1, len(c.owner))
 }
 
-// contact is the touch of cover k by a hull whose centre is at p, inside it.
-func (c *covers) contact(k int, p geom.Vec, m *Map) Contact {
+// contact is the touch of cover k by a hull whose centre is at p, inside it, and that is to move by d.
+func (c *covers) contact(k int, p, d geom.Vec, m *Map) Contact {
 	q, _ := nearestEdge(c.edges[k], p)
-	return Contact{Point: q, Normal: q.Sub(p).Unit(), Ref: m.ref(c.owner[k])}
+	n := q.Sub(p).Unit()
+	if n == (geom.Vec{}) { // the centre is on the very edge
+		n = d.Unit().Scale(-1)
+	}
+	return Contact{Point: q, Normal: n, Ref: m.ref(c.owner[k])}
 }
 
 // outward returns d without what would lead straight deeper into the covers, and the first of them that

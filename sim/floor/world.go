@@ -123,9 +123,10 @@ func (w *World) Advance(t float64) {
 }
 
 // MoveSolid shifts a solid so that its anchor (the first point of a wall or
-// polygon, the centre of a disc) comes to lie at p. The first time this takes the solid out of what the map holds
-// for this world, which copies the primitives; later moves are cheap.
-// Where it stands depends on p alone, not on the way there. A p that is not finite or beyond Limit is ignored.
+// polygon, the centre of a disc) comes to lie at p. The first time this takes the solid out
+// of what the map holds for this world, which copies the primitives; later moves are cheap.
+// Where it stands depends on p alone, not on the way there. A p that is not finite or beyond
+// Limit is ignored.
 func (w *World) MoveSolid(i int, p geom.Vec) {
 	if !withinLimit(p) {
 		return

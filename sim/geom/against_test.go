@@ -92,7 +92,8 @@ func TestRaysAgainstSimplefeatures(t *testing.T) {
 	}
 }
 
-// margin returns how clearly the ray meets or misses the wall: how far the ends of each are from the other's line or end.
+// margin returns how clearly the ray meets or misses the wall: how far the ends of each are
+// from the other.
 func margin(o, d Vec, reach float64, s Segment) float64 {
 	end := o.AddScaled(reach, d)
 	ray := Segment{o, end}

@@ -93,7 +93,8 @@ func (g Polygon) Contains(p Vec) bool {
 	return in
 }
 
-// Nearest returns the point of the boundary of g nearest to p, the first of equals; the zero vector when g has no corners.
+// Nearest returns the point of the boundary of g nearest to p, the first of equals; the zero
+// vector when g has no corners.
 func (g Polygon) Nearest(p Vec) Vec {
 	best, at := math.Inf(1), Vec{}
 	for i := range g {
@@ -114,7 +115,8 @@ func (g Polygon) Distance(p Vec) float64 {
 	return d
 }
 
-// Area returns the area that g encloses, ½ Σ pᵢ × pᵢ₊₁, positive when the corners run counter-clockwise.
+// Area returns the area that g encloses, ½ Σ pᵢ × pᵢ₊₁, positive when the corners run
+// counter-clockwise.
 func (g Polygon) Area() float64 {
 	var sum float64
 	for i := range g {
