@@ -14,7 +14,7 @@ const (
 )
 
 // benchPoses are free places in an office, each with the headings of a ring of 24.
-func benchPoses(b *testing.B, w *World, side float64) ([]geom.Vec, [][]Ray) {
+func benchPoses(w *World, side float64) ([]geom.Vec, [][]Ray) {
 	r := newDice(7)
 	var at []geom.Vec
 	var rings [][]Ray
@@ -40,7 +40,7 @@ func onOffices(b *testing.B, run func(b *testing.B, w *World, at []geom.Vec, rin
 		b.Run(fmt.Sprint(walls), func(b *testing.B) {
 			c, side := office(walls)
 			w := build(b, c, benchReach).NewWorld()
-			at, rings := benchPoses(b, w, side)
+			at, rings := benchPoses(w, side)
 			b.ReportAllocs()
 			b.ResetTimer()
 			run(b, w, at, rings)
@@ -69,6 +69,28 @@ func BenchmarkFan(b *testing.B) {
 		}
 		b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/24, "ns/ray")
 	})
+}
+
+// BenchmarkFanAmongMovers is BenchmarkFan on 500 walls with ten movers and three moved solids about.
+func BenchmarkFanAmongMovers(b *testing.B) {
+	c, side := office(500)
+	r := newDice(3)
+	for range 10 {
+		c.Movers = append(c.Movers, Mover{Half: geom.Vec{X: 0.4, Y: 0.25}, Speed: 0.5, Route: []geom.Vec{
+			{X: r.between(0, side), Y: r.between(0, side)}, {X: r.between(0, side), Y: r.between(0, side)}}})
+	}
+	w := build(b, c, benchReach).NewWorld()
+	for i := range 3 {
+		w.MoveSolid(10*i+5, geom.Vec{X: r.between(0, side), Y: r.between(0, side)})
+	}
+	w.Advance(5)
+	_, rings := benchPoses(w, side)
+	var out [24]float64
+	b.ReportAllocs()
+	b.ResetTimer()
+	for i := 0; i < b.N; i++ {
+		w.Cast(rings[i&1023], benchReach, out[:])
+	}
 }
 
 // BenchmarkNearest asks within a hull and a little, as a run does at every tick.
