@@ -7,6 +7,8 @@ import (
 	"slices"
 )
 
+//go:generate go test -run ^TestFiles$ -update
+
 //go:embed *.json
 var files embed.FS
 

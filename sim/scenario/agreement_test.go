@@ -72,7 +72,10 @@ func TestSchemaAgreesWithParser(t *testing.T) {
 	}
 	random := rand.New(rand.NewPCG(1, 2))
 	accepted := 0
-	const rounds = 2400
+	rounds := 2400
+	if testing.Short() {
+		rounds = 300
+	}
 	for i := range rounds {
 		// Printing first makes every optional field explicit, so that all of them get their turn.
 		text := mustParse(t, string(texts[i%len(texts)])).Print()

@@ -30,6 +30,7 @@ func (s *Scenario) check(r *report) {
 	c.places()
 	c.logic()
 	c.edits()
+	c.size()
 }
 
 type checker struct {
@@ -165,6 +166,17 @@ func (r *rule) mustBe(got string) string {
 		got = string(g[:40]) + "…"
 	}
 	return "must be one of " + strings.Join(names, ", ") + "; it is " + strconv.Quote(got) + hint
+}
+
+// size checks that the canonical text can be read again. Only very many walls, solids and edits can make it
+// too long, so that it need not be written out to know for all others.
+func (c checker) size() {
+	if len(c.list) > 0 || len(c.s.Floor.Walls)+len(c.s.Floor.Solids)+len(c.s.Edits) < 10_000 {
+		return
+	}
+	if n := len(c.s.Print()); n > MaxBytes {
+		c.say("", "the canonical text of this scenario is %.1f MB long; at most %d MB are allowed", float64(n)/(1<<20), MaxBytes>>20)
+	}
 }
 
 func (c checker) robot() {

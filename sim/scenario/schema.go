@@ -8,7 +8,9 @@ import (
 // SchemaID identifies the JSON Schema of the format. Nothing is served there.
 const SchemaID = "https://leeway.invalid/schema/1"
 
-// schema is generated from format.go and rules.go: go test ./sim/scenario -run TestSchema -update
+//go:generate go test -run ^TestSchema$ -update
+
+// schema is generated from format.go and rules.go.
 //
 //go:embed schema.json
 var schema []byte
