@@ -196,6 +196,10 @@ func TestConfigOfEverything(t *testing.T) {
 	if d := cmp.Diff(s, s.WithEdits(c.Edits)); d != "" {
 		t.Error(d)
 	}
+	border := sim.Edit{Kind: sim.MoveSolid, Index: 0, Pos: geom.Vec{X: 1}}
+	if got := New(12, 8).WithEdits([]sim.Edit{border}); len(got.Edits) != 0 {
+		t.Error("a moved border in a file")
+	}
 	if got := New(12, 8).WithEdits(nil); len(got.Edits) != 0 {
 		t.Error("edits out of nothing")
 	}

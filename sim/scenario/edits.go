@@ -7,12 +7,16 @@ import (
 	"leeway/sim/geom"
 )
 
-// WithEdits returns a copy whose Edits are those that a run of s recorded.
+// WithEdits returns a copy whose Edits are those that a run of s recorded. What a
+// file cannot say, a moved border, is left out.
 func (s *Scenario) WithEdits(edits []sim.Edit) *Scenario {
 	c := s.Clone()
 	c.Edits = nil
-	walls := len(s.Floor.Walls)
+	walls, solids := len(s.Floor.Walls), len(s.Floor.Solids)
 	for _, e := range edits {
+		if e.Kind == sim.MoveSolid && e.Index >= walls+solids {
+			continue
+		}
 		f := Edit{Tick: e.Tick}
 		if e.Kind != sim.SetNumber {
 			f.To = Point{e.Pos.X + 0, e.Pos.Y + 0}

@@ -339,7 +339,7 @@ type Edit struct {
 	Value float64 `json:"value" form:"number" jsonschema:"required"`
 }
 
-// form says which of its forms a value of several has; "" fits none.
+// former is a value of one of several forms; the fields of the others are zero.
 type former interface{ form() string }
 
 func (s Solid) form() string {

@@ -2,6 +2,7 @@ package scenario
 
 import (
 	"reflect"
+	"slices"
 	"strings"
 	"sync"
 )
@@ -27,15 +28,7 @@ type fieldSpec struct {
 }
 
 func (f *fieldSpec) in(form string) bool {
-	if f.forms == nil {
-		return true
-	}
-	for _, g := range f.forms {
-		if g == form {
-			return true
-		}
-	}
-	return false
+	return f.forms == nil || slices.Contains(f.forms, form)
 }
 
 // form returns which of its forms a struct has, "" if it has only one.
