@@ -32,6 +32,16 @@ func (r *Run) Edit(e Edit) error {
 // Edits returns the edit list: those of the config and those made since.
 func (r *Run) Edits() []Edit { return r.edits }
 
+// Foresee gives a run that has been brought back to the past the edits that src,
+// the same run at a later tick, has had since: stepped on, it becomes src again.
+func (r *Run) Foresee(src *Run) {
+	r.edits = append(r.edits[:0], src.edits...)
+}
+
+// Forget drops the edits that are still to come: what is stepped from here is
+// another future.
+func (r *Run) Forget() { r.edits = r.edits[:r.due] }
+
 func (e *Edit) sameThing(f *Edit) bool {
 	return e.Kind == f.Kind && e.Index == f.Index && e.Number == f.Number
 }
@@ -51,7 +61,7 @@ func (r *Run) apply(e *Edit) {
 	case MoveGoal:
 		r.goal = e.Pos
 	case MoveRobot:
-		r.pose.Pos = e.Pos
+		r.pose.Pos = r.put(e.Pos)
 		r.drive.Carry(drive.Estimate{X: r.pose.Pos.X, Y: r.pose.Pos.Y, Theta: r.pose.Theta})
 	case MoveSolid:
 		r.world.MoveSolid(e.Index, e.Pos)

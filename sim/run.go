@@ -26,6 +26,7 @@ type Run struct {
 	pose  geom.Pose
 	goal  geom.Vec
 	u     geom.Vec // wanted velocity, in the believed frame
+	cmd   drive.Wheels
 	since int64    // tick from which what is asked "within" counts
 	ended int64    // tick at which the run ended, if it has
 	idled int64    // ticks passed in ended states before the present one
@@ -105,10 +106,7 @@ func (r *Run) idealise() {
 	c := &r.cfg
 	if c.Ideal&PointMotion != 0 {
 		c.Drive.Model = drive.Point
-		if c.Steer.Rule == steer.LookAhead {
-			// The point that the plan is for is the one ahead of the axle.
-			r.pose.Pos = r.pose.Pos.AddScaled(c.Steer.Ahead, geom.Heading(r.pose.Theta))
-		}
+		r.pose.Pos = r.put(r.pose.Pos)
 	}
 	if c.Ideal&NoWheelLimits != 0 {
 		c.Drive.MaxWheelSpeed, c.Drive.MaxWheelAccel, c.Steer.MaxWheelSpeed = 0, 0, 0
@@ -131,6 +129,16 @@ func (r *Run) idealise() {
 	}
 }
 
+// put returns where the hull's centre goes when the robot is put at p. That is p,
+// but for a point under the look-ahead rule: the point that the plan is for is the
+// one ahead of the axle.
+func (r *Run) put(p geom.Vec) geom.Vec {
+	if r.cfg.Drive.Model == drive.Point && r.cfg.Steer.Rule == steer.LookAhead {
+		return p.AddScaled(r.cfg.Steer.Ahead, geom.Heading(r.pose.Theta))
+	}
+	return p
+}
+
 // Step goes on by one tick. Once the run has ended, ticks only pass, as in Idle,
 // while there are edits still to come that may set it going again; after the last
 // of them Step does nothing, and Tick stays.
@@ -146,8 +154,8 @@ func (r *Run) Step() {
 	r.sense()
 	r.estimate()
 	r.decide()
-	cmd := r.steer()
-	r.actuate(cmd)
+	r.steer()
+	r.actuate()
 	r.move()
 	r.measure()
 }
@@ -215,6 +223,19 @@ func (r *Run) Belief() drive.Estimate { return r.drive.Estimate() }
 // Wanted returns the velocity u that the logic asked for last, in the frame of
 // the belief.
 func (r *Run) Wanted() geom.Vec { return r.u }
+
+// Command returns the wheel speeds commanded at the last tick, rad/s; a point has
+// none.
+func (r *Run) Command() drive.Wheels { return r.cmd }
+
+// Twist returns the actual speed (m/s) and turning (rad/s); a point's speed is
+// that of its velocity, and it does not turn.
+func (r *Run) Twist() (v, omega float64) {
+	if r.cfg.Drive.Model == drive.Point {
+		return r.u.Norm(), 0
+	}
+	return r.drive.Twist()
+}
 
 // Drive returns the machine. Read only.
 func (r *Run) Drive() *drive.Drive { return r.drive }

@@ -8,7 +8,7 @@ import (
 
 // maxLogged bounds the lists of switches and contacts: a chattering design
 // fills them within minutes, and the counts go on without them.
-const maxLogged = 10_000
+const maxLogged = 4_000
 
 // moveMovers is stage 1: what moves by itself moves to where it is at the end
 // of this tick, pushing a hull that stands in its way.
@@ -62,25 +62,25 @@ func (r *Run) decide() {
 
 // steer is stage 5: from the wanted velocity and the believed heading to wheel
 // speeds within their limit.
-func (r *Run) steer() drive.Wheels {
+func (r *Run) steer() {
 	if r.cfg.Drive.Model == drive.Point {
-		return drive.Wheels{}
+		return
 	}
 	v, omega := r.cfg.Steer.TwistOver(r.u, r.drive.Estimate().Theta, r.dt)
-	w, limited := r.cfg.Steer.Wheels(v, omega)
+	var limited bool
+	r.cmd, limited = r.cfg.Steer.Wheels(v, omega)
 	if limited {
 		r.saturated++
 	}
-	return w
 }
 
 // actuate is stage 6: dead time, acceleration limit, lag.
-func (r *Run) actuate(cmd drive.Wheels) {
+func (r *Run) actuate() {
 	if r.cfg.Drive.Model == drive.Point {
 		return
 	}
 	before := r.saturated
-	r.drive.Actuate(cmd)
+	r.drive.Actuate(r.cmd)
 	if r.drive.Saturated() && before == r.saturated {
 		r.saturated++
 	}

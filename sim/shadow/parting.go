@@ -112,7 +112,12 @@ func (s *Set) did(w Who) string {
 }
 
 // Partings returns the places where the shadow and the robot separated, in order.
-func (s *Set) Partings(w Who) []Parting { return s.apart[w].partings }
+func (s *Set) Partings(w Who) []Parting {
+	if int(w) >= len(s.apart) {
+		return nil
+	}
+	return s.apart[w].partings
+}
 
 // Clock writes a time of a run as minutes and seconds: 0:19.2.
 func Clock(t float64) string {

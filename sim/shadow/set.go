@@ -45,8 +45,8 @@ func Config(c sim.Config, w Who) sim.Config {
 
 // Set is a robot with its shadows.
 type Set struct {
-	runs  [Models]*sim.Run
-	apart [Models]apart
+	runs  []*sim.Run // by Who; the robot alone when there are no shadows
+	apart []apart    // likewise
 	tick  int64
 	dt    float64
 	hull  float64
@@ -58,24 +58,38 @@ func New(c sim.Config) (*Set, error) {
 	if err != nil {
 		return nil, err
 	}
-	return NewOn(m, c)
+	return NewOn(m, c, true)
 }
 
-// NewOn is New on a floor map that others share.
-func NewOn(m *floor.Map, c sim.Config) (*Set, error) {
+// NewOn is New on a floor map that others share, with shadows or without: a robot
+// alone costs what a Run costs.
+func NewOn(m *floor.Map, c sim.Config, shadows bool) (*Set, error) {
 	s := &Set{dt: c.Tick, hull: c.Hull}
 	for w := range Models {
+		if w != Robot && !shadows {
+			break
+		}
 		r, err := sim.NewOn(m, Config(c, w))
 		if err != nil {
 			return nil, err
 		}
-		s.runs[w] = r
+		s.runs = append(s.runs, r)
+		s.apart = append(s.apart, apart{})
 	}
 	return s, nil
 }
 
-// Run returns the run of one model. Stepping or editing it is the Set's business.
-func (s *Set) Run(w Who) *sim.Run { return s.runs[w] }
+// Run returns the run of one model, nil for a shadow that the set does not have.
+// Stepping or editing it is the Set's business.
+func (s *Set) Run(w Who) *sim.Run {
+	if int(w) < len(s.runs) {
+		return s.runs[w]
+	}
+	return nil
+}
+
+// Shadows reports whether the robot has its shadows beside it.
+func (s *Set) Shadows() bool { return len(s.runs) > 1 }
 
 // Tick returns how many ticks have been stepped.
 func (s *Set) Tick() int64 { return s.tick }
@@ -103,8 +117,8 @@ func (s *Set) Step() {
 		}
 	}
 	s.tick++
-	for w := Point; w < Models; w++ {
-		s.apart[w].compare(s, w)
+	for w := range s.apart[1:] {
+		s.apart[w+1].compare(s, Who(w+1))
 	}
 }
 
@@ -127,10 +141,11 @@ func (s *Set) Edit(e sim.Edit) error {
 // CopyFrom makes s stand exactly where src stands, keeping its memory. A zero Set
 // will do.
 func (s *Set) CopyFrom(src *Set) {
-	for w := range Models {
-		if s.runs[w] == nil {
-			s.runs[w] = new(sim.Run)
-		}
+	for len(s.runs) < len(src.runs) {
+		s.runs, s.apart = append(s.runs, new(sim.Run)), append(s.apart, apart{})
+	}
+	s.runs, s.apart = s.runs[:len(src.runs)], s.apart[:len(src.runs)]
+	for w := range src.runs {
 		s.runs[w].CopyFrom(src.runs[w])
 		a, b := &s.apart[w], &src.apart[w]
 		log := append(a.partings[:0], b.partings...)
@@ -151,6 +166,9 @@ type Deviation struct {
 
 // Deviation compares a shadow with the robot, same-time: |x_robot(t) − x_shadow(t)|.
 func (s *Set) Deviation(w Who) Deviation {
+	if int(w) >= len(s.apart) {
+		return Deviation{}
+	}
 	a := &s.apart[w]
 	d := Deviation{Largest: a.largest, At: float64(a.at) * s.dt, Now: a.now}
 	if a.n > 0 {

@@ -1,0 +1,193 @@
+package shadow_test
+
+import (
+	"testing"
+
+	"leeway/sim"
+	"leeway/sim/floor"
+	"leeway/sim/geom"
+	"leeway/sim/ring"
+	"leeway/sim/shadow"
+
+	"pgregory.net/rapid"
+)
+
+func newTape(t testing.TB, c sim.Config, shadows bool) *shadow.Tape {
+	t.Helper()
+	m, err := floor.NewMap(c.Floor, 3)
+	if err != nil {
+		t.Fatal(err)
+	}
+	tape, err := shadow.NewTape(m, c, shadows)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return tape
+}
+
+// hashAt is the plain way to a past tick: everything from the start again.
+func hashAt(t testing.TB, c sim.Config, edits []sim.Edit, tick int64) (h [3]uint64) {
+	t.Helper()
+	c.Edits = nil
+	for _, e := range edits {
+		if e.Tick < tick {
+			c.Edits = append(c.Edits, e)
+		}
+	}
+	s := newSet(t, c)
+	for s.Tick() < tick {
+		s.Step()
+	}
+	for w := range shadow.Models {
+		h[w] = s.Run(w).Outcome().Hash
+	}
+	return h
+}
+
+func busy() sim.Config {
+	c := robot()
+	c.Floor.Movers = []floor.Mover{{Radius: 0.2, Route: []geom.Vec{v(5.5, 1), v(5.5, 5)}, Speed: 0.4, Pause: 0.5}}
+	return c
+}
+
+// Any tick back is exact, whatever was looked at, changed and cut before: random
+// walks over a tape, against runs from the start.
+func TestAnyTickBackIsExact(t *testing.T) {
+	rapid.Check(t, func(rt *rapid.T) {
+		c := busy()
+		tape := newTape(t, c, true)
+		for range rapid.IntRange(1, 6).Draw(rt, "acts") {
+			switch rapid.IntRange(0, 3).Draw(rt, "act") {
+			case 0:
+				for range rapid.IntRange(1, 5000).Draw(rt, "steps") {
+					tape.Step()
+				}
+			case 1:
+				tape.LookAt(rapid.Int64Range(0, tape.Length()).Draw(rt, "to"))
+			case 2:
+				e := sim.Edit{Kind: sim.MoveSolid, Index: 1, Pos: v(rapid.Float64Range(5, 9).Draw(rt, "x"), 3)}
+				if _, err := tape.Edit(e); err != nil {
+					rt.Fatal(err)
+				}
+			case 3:
+				if _, err := tape.Edit(sim.Edit{Kind: sim.MoveGoal, Pos: v(10, rapid.Float64Range(1, 5).Draw(rt, "y"))}); err != nil {
+					rt.Fatal(err)
+				}
+			}
+		}
+		edits := tape.Now().Run(shadow.Robot).Edits()
+		for range 2 {
+			at := rapid.Int64Range(0, tape.Length()).Draw(rt, "look")
+			tape.LookAt(at)
+			want := hashAt(t, c, edits, at)
+			for w := range shadow.Models {
+				if got := tape.Now().Run(w).Outcome().Hash; got != want[w] {
+					rt.Fatalf("tick %d, %v: hash %x on the tape, %x from the start", at, w, got, want[w])
+				}
+			}
+		}
+	})
+}
+
+// A change in the past cuts the tape there, and the record with it.
+func TestAChangeInThePastCutsTheTape(t *testing.T) {
+	tape := newTape(t, busy(), true)
+	for !tape.Done() {
+		tape.Step()
+	}
+	length := tape.Length()
+	tape.LookAt(1501)
+	if tape.AtHead() || tape.Length() != length {
+		t.Fatal("looking back shortened the tape")
+	}
+	cut, err := tape.Edit(sim.Edit{Kind: sim.MoveGoal, Pos: v(10, 5)})
+	if err != nil || !cut || !tape.AtHead() || tape.Length() != 1501 {
+		t.Fatalf("cut %v, error %v, length %d", cut, err, tape.Length())
+	}
+	r := &tape.Record
+	if last := r.Rows[len(r.Rows)-1].Tick; last > 1501 || len(r.Ranges) != len(r.Rows) {
+		t.Errorf("the record still holds a row of tick %d", last)
+	}
+	for _, e := range r.Events {
+		if e.Tick > 1501 {
+			t.Errorf("the record still holds %+v", e)
+		}
+	}
+	if cut, _ := tape.Edit(sim.Edit{Kind: sim.MoveGoal, Pos: v(10, 4)}); cut {
+		t.Error("a change at the end of the tape is said to cut it")
+	}
+	for !tape.Done() {
+		tape.Step()
+	}
+	for i := 1; i < len(r.Rows); i++ {
+		if r.Rows[i].Tick-r.Rows[i-1].Tick != r.Every {
+			t.Fatalf("rows at ticks %d and %d", r.Rows[i-1].Tick, r.Rows[i].Tick)
+		}
+	}
+}
+
+// The record agrees with the runs it is of.
+func TestTheRecordIsTrue(t *testing.T) {
+	c := busy()
+	c.Ring.Bearings = ring.Even(6)
+	tape := newTape(t, c, true)
+	for !tape.Done() {
+		tape.Step()
+	}
+	r := &tape.Record
+	for _, i := range []int{0, 17, len(r.Rows) / 2, len(r.Rows) - 1} {
+		row := r.Rows[i]
+		tape.LookAt(row.Tick)
+		for w := range shadow.Models {
+			run := tape.Now().Run(w)
+			if m := row.Models[w]; m.Pose != run.Pose() || int(m.Mode) != run.Engine().Mode() || m.Gap != min(run.Gap(), m.Gap) {
+				t.Errorf("row %d, %v: %+v", i, w, m)
+			}
+		}
+	}
+	tape.LookAt(tape.Length())
+	kinds := map[shadow.EventKind]int{}
+	for _, e := range r.Events {
+		kinds[e.Kind]++
+		if e.Text == "" {
+			t.Errorf("an event without words: %+v", e)
+		}
+	}
+	if kinds[shadow.EndMark] != 3 || kinds[shadow.PartingMark] == 0 {
+		t.Errorf("marks: %v", kinds)
+	}
+	if n := tape.Now().Run(shadow.Robot).Outcome().Contacts; kinds[shadow.ContactMark] < min(n, 1) {
+		t.Errorf("%d contacts, %d marked", n, kinds[shadow.ContactMark])
+	}
+}
+
+// Hidden shadows are not computed: the robot alone, the same robot.
+func TestATapeWithoutShadows(t *testing.T) {
+	with, without := newTape(t, busy(), true), newTape(t, busy(), false)
+	for !with.Done() {
+		with.Step()
+	}
+	for !without.Done() {
+		without.Step()
+	}
+	a, b := with.Now().Run(shadow.Robot).Outcome(), without.Now().Run(shadow.Robot).Outcome()
+	if a != b || without.Now().Run(shadow.Point) != nil || without.Now().Shadows() {
+		t.Errorf("%+v with shadows, %+v without", a, b)
+	}
+}
+
+// BenchmarkSeek goes back by the longest stretch that has to be stepped anew: from
+// just before a snapshot.
+func BenchmarkSeek(b *testing.B) {
+	c := busy()
+	c.Goal, c.Asked.Within = v(-50, -50), 300
+	tape := newTape(b, c, true)
+	for range 12_000 {
+		tape.Step()
+	}
+	b.ReportAllocs()
+	for b.Loop() {
+		tape.LookAt(7999)
+		tape.LookAt(1)
+	}
+}
