@@ -89,7 +89,7 @@ func Bench(v BenchView) templ.Component {
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
-			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 5, "\" download>Save file</a> <button id=\"open\" class=\"btn\" type=\"button\">Open</button></span></header><p id=\"brief\" class=\"brief\" role=\"group\" aria-label=\"The brief: the scenario in words\">")
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 5, "\" download>Save file</a> <button id=\"open\" class=\"btn\" type=\"button\">Open</button></span></header><section class=\"brief\" aria-label=\"The brief: the scenario in words\"><p id=\"brief\">")
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
@@ -97,7 +97,7 @@ func Bench(v BenchView) templ.Component {
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
-			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 6, "</p><main><section class=\"floor\" aria-label=\"Floor\"><svg id=\"floor\" tabindex=\"0\" role=\"application\" aria-label=\"Floor. Tab reaches what can be moved, arrow keys move it: 0.1 metres, with Shift 0.5, with Alt 0.01. On the floor itself arrow keys pan, plus and minus zoom, 0 shows all of it.\"></svg> <output id=\"cursor\" class=\"cursor\" aria-live=\"off\"></output><div class=\"zoom\" role=\"group\" aria-label=\"Zoom\"><button type=\"button\" data-zoom=\"1.5\" aria-label=\"Zoom in\">+</button> <button type=\"button\" data-zoom=\"0.667\" aria-label=\"Zoom out\">−</button> <button type=\"button\" data-zoom=\"0\" aria-label=\"Show the whole floor\"><svg width=\"14\" height=\"14\" viewBox=\"0 0 14 14\" aria-hidden=\"true\"><path d=\"M1 4.5V1h3.5M9.5 1H13v3.5M13 9.5V13H9.5M4.5 13H1V9.5\"></path></svg></button></div><div id=\"banner\" class=\"banner\" role=\"status\" hidden><span class=\"words\"></span> <button class=\"btn\" type=\"button\"></button></div></section><div class=\"side\"><section id=\"why\" class=\"card why\" aria-label=\"What the robot is doing, and why\"><p class=\"mode\"><i class=\"swatch\" aria-hidden=\"true\"></i> <span class=\"mode-name\">…</span> <span class=\"since\"></span></p><p class=\"because\"></p></section><section id=\"verdict\" class=\"card verdict\" aria-label=\"The run against what is asked\"><p class=\"head\"><span class=\"big\">–</span> <span class=\"of\">of leeway.</span></p><table><thead><tr><th scope=\"col\"><span class=\"unseen\">measure</span></th><th scope=\"col\">robot</th><th scope=\"col\">asked</th></tr></thead> <tbody>")
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 6, "</p></section><main><section class=\"floor\" aria-label=\"Floor\"><svg id=\"floor\" tabindex=\"0\" role=\"application\" aria-label=\"Floor. Tab reaches what can be moved, arrow keys move it: 0.1 metres, with Shift 0.5, with Alt 0.01. On the floor itself arrow keys pan, plus and minus zoom, 0 shows all of it.\"></svg> <output id=\"cursor\" class=\"cursor\" aria-live=\"off\"></output><div class=\"zoom\" role=\"group\" aria-label=\"Zoom\"><button type=\"button\" data-zoom=\"1.5\" aria-label=\"Zoom in\">+</button> <button type=\"button\" data-zoom=\"0.667\" aria-label=\"Zoom out\">−</button> <button type=\"button\" data-zoom=\"0\" aria-label=\"Show the whole floor\"><svg width=\"14\" height=\"14\" viewBox=\"0 0 14 14\" aria-hidden=\"true\"><path d=\"M1 4.5V1h3.5M9.5 1H13v3.5M13 9.5V13H9.5M4.5 13H1V9.5\"></path></svg></button></div><div id=\"banner\" class=\"banner\" role=\"status\" hidden><span class=\"words\"></span> <button class=\"btn\" type=\"button\"></button></div></section><div class=\"side\"><section id=\"why\" class=\"card why\" aria-label=\"What the robot is doing, and why\"><p class=\"mode\"><i class=\"swatch\" aria-hidden=\"true\"></i> <span class=\"mode-name\">…</span></p><p><span class=\"since\"></span> <span class=\"because\"></span></p></section><section id=\"verdict\" class=\"card verdict\" aria-label=\"The run against what is asked\"><p class=\"head\"><span class=\"big\">–</span> <span class=\"of\">of leeway.</span></p><table><thead><tr><th scope=\"col\"><span class=\"unseen\">measure</span></th><th scope=\"col\">robot</th><th scope=\"col\">asked</th></tr></thead> <tbody>")
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
@@ -109,7 +109,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var6 string
 				templ_7745c5c3_Var6, templ_7745c5c3_Err = templruntime.NewAttributeExpression(r.key).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 67, Col: 28}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 68, Col: 28}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var6)
 				if templ_7745c5c3_Err != nil {
@@ -122,7 +122,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var7 string
 				templ_7745c5c3_Var7, templ_7745c5c3_Err = templ.JoinStringErrs(r.label)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 68, Col: 34}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 69, Col: 34}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var7))
 				if templ_7745c5c3_Err != nil {
@@ -145,7 +145,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var8 string
 				templ_7745c5c3_Var8, templ_7745c5c3_Err = templruntime.NewAttributeExpression(s.title).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 98, Col: 28}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 99, Col: 28}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var8)
 				if templ_7745c5c3_Err != nil {
@@ -158,7 +158,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var9 string
 				templ_7745c5c3_Var9, templ_7745c5c3_Err = templruntime.NewAttributeExpression(s.value).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 99, Col: 55}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 100, Col: 55}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var9)
 				if templ_7745c5c3_Err != nil {
@@ -171,7 +171,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var10 string
 				templ_7745c5c3_Var10, templ_7745c5c3_Err = templruntime.NewAttributeExpression(s.title).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 99, Col: 78}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 100, Col: 78}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var10)
 				if templ_7745c5c3_Err != nil {
@@ -194,7 +194,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var11 string
 				templ_7745c5c3_Var11, templ_7745c5c3_Err = templ.JoinStringErrs(s.label)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 100, Col: 41}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 101, Col: 41}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var11))
 				if templ_7745c5c3_Err != nil {
@@ -265,7 +265,7 @@ func dialogs(v BenchView) templ.Component {
 		var templ_7745c5c3_Var13 string
 		templ_7745c5c3_Var13, templ_7745c5c3_Err = templruntime.NewAttributeExpression(saveURL(v.Session)).ResolveURL(ctx)
 		if templ_7745c5c3_Err != nil {
-			return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 131, Col: 68}
+			return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 132, Col: 68}
 		}
 		_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var13)
 		if templ_7745c5c3_Err != nil {
@@ -291,7 +291,7 @@ func dialogs(v BenchView) templ.Component {
 			var templ_7745c5c3_Var14 string
 			templ_7745c5c3_Var14, templ_7745c5c3_Err = templ.JoinStringErrs(k.key)
 			if templ_7745c5c3_Err != nil {
-				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 152, Col: 26}
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 153, Col: 26}
 			}
 			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var14))
 			if templ_7745c5c3_Err != nil {
@@ -304,7 +304,7 @@ func dialogs(v BenchView) templ.Component {
 			var templ_7745c5c3_Var15 string
 			templ_7745c5c3_Var15, templ_7745c5c3_Err = templ.JoinStringErrs(k.does)
 			if templ_7745c5c3_Err != nil {
-				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 152, Col: 51}
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `bench.templ`, Line: 153, Col: 51}
 			}
 			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var15))
 			if templ_7745c5c3_Err != nil {

@@ -3,6 +3,7 @@ package page
 import (
 	"bytes"
 	"context"
+	"encoding/json"
 	"io"
 	"regexp"
 	"strings"
@@ -37,7 +38,7 @@ func pages() map[string]templ.Component {
 		"bench": Bench(BenchView{
 			Session: "k3f", Name: hostile, Purpose: hostile,
 			Brief: []Part{{Text: hostile}, {Number: hostile, Unit: hostile}, {Choice: hostile}},
-			Hello: map[string]string{"name": hostile},
+			Hello: json.RawMessage(`{"name":"</script><img src=x>"}`),
 		}),
 		"open": Open(OpenView{}),
 		"message": Message(MessageView{

@@ -77,6 +77,33 @@ func TestModesDifferInMoreThanColour(t *testing.T) {
 	}
 }
 
+func TestLongWaysAreThinnedWhereNobodySees(t *testing.T) {
+	f := sample()
+	var way []Point
+	for i := range 5000 { // a quarter turn of 3 m radius about (6, 4), then straight
+		a := math.Pi / 2 * float64(i) / 4999
+		way = append(way, Point{6 + 3*math.Cos(a), 4 + 3*math.Sin(a)})
+	}
+	for i := range 5000 {
+		way = append(way, Point{6 - 0.001*float64(i), 7})
+	}
+	f.Way = []Leg{{Look: LookGoal, Points: way}}
+	c := &canvas{f: f, scale: 100}
+	kept := c.thin(way)
+	if n := len(kept); n < 5 || n > 60 {
+		t.Errorf("%d points kept", n)
+	}
+	for _, p := range way {
+		least := math.Inf(1)
+		for i := 1; i < len(kept); i++ {
+			least = min(least, distance(p, kept[i-1], kept[i]))
+		}
+		if least*c.scale > 0.4001 {
+			t.Fatalf("%v is %v drawing units from what is drawn", p, least*c.scale)
+		}
+	}
+}
+
 func TestAloneIsAFileOfItsOwn(t *testing.T) {
 	s := render(t, sample(), Options{Paint: Ink, Alone: true})
 	for _, want := range []string{`xmlns="http://www.w3.org/2000/svg"`, `width="812"`, ">start</text>", ">goal</text>", ">1 m</text>"} {

@@ -141,21 +141,47 @@ func (c *canvas) way() {
 	c.s(`</g>`)
 }
 
-// thin leaves out points so near the one before that nobody could see them: a
-// way has thousands.
+// thin leaves out the points that lie within a hair's breadth of the straight line
+// between those that stay (Ramer 1972; Douglas & Peucker 1973): a way has thousands.
 func (c *canvas) thin(ps []Point) []Point {
-	const near = 1.5 // drawing units
+	const hair = 0.4 // drawing units
 	if len(ps) < 3 {
 		return ps
 	}
-	kept := ps[:1:1]
-	for _, p := range ps[1 : len(ps)-1] {
-		last := kept[len(kept)-1]
-		if math.Hypot(p.X-last.X, p.Y-last.Y)*c.scale >= near {
+	keep := make([]bool, len(ps))
+	keep[0], keep[len(ps)-1] = true, true
+	spans := [][2]int{{0, len(ps) - 1}}
+	for len(spans) > 0 {
+		a, b := spans[len(spans)-1][0], spans[len(spans)-1][1]
+		spans = spans[:len(spans)-1]
+		far, at := hair/c.scale, -1
+		for i := a + 1; i < b; i++ {
+			if d := distance(ps[i], ps[a], ps[b]); d > far {
+				far, at = d, i
+			}
+		}
+		if at >= 0 {
+			keep[at] = true
+			spans = append(spans, [2]int{a, at}, [2]int{at, b})
+		}
+	}
+	var kept []Point
+	for i, p := range ps {
+		if keep[i] {
 			kept = append(kept, p)
 		}
 	}
-	return append(kept, ps[len(ps)-1])
+	return kept
+}
+
+// distance returns how far p is from the straight piece between a and b.
+func distance(p, a, b Point) float64 {
+	dx, dy := b.X-a.X, b.Y-a.Y
+	t := 0.0
+	if l := dx*dx + dy*dy; l > 0 {
+		t = math.Max(0, math.Min(1, ((p.X-a.X)*dx+(p.Y-a.Y)*dy)/l))
+	}
+	return math.Hypot(p.X-a.X-t*dx, p.Y-a.Y-t*dy)
 }
 
 // ends draws the start, as a hull with its heading, and the goal.

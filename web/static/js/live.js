@@ -86,12 +86,15 @@ export class Live {
       clearTimeout(slow);
       if (turn !== this.#turn) return;
       if (event.code === UNKNOWN_SESSION) this.onLink('gone');
-      // A run that the server has put away is not woken by coming back unasked.
-      else if (!ended) this.#lost();
+      else this.#lost(ended);
     });
   }
 
-  async #lost() {
+  /**
+   * A close code can get lost on its way, so the server is asked.
+   * @param {boolean} ended the server said that it ends the connection
+   */
+  async #lost(ended) {
     const turn = this.#turn;
     const unknown = await this.#unknown();
     if (turn !== this.#turn) return;
@@ -99,6 +102,8 @@ export class Live {
       this.onLink('gone');
       return;
     }
+    // A run that the server has put away is not woken by coming back unasked.
+    if (ended) return;
     const delay = 1000 * wait(this.#attempt++, Math.random());
     this.onLink('lost', Date.now() + delay);
     this.#timer = window.setTimeout(() => this.#open(), delay);

@@ -23,8 +23,8 @@ async function hand() {
     location.replace(result.url);
     return;
   }
-  say(words, 'This link could not be opened.');
-  place.replaceChildren(faultList(result.faults, undefined));
+  set(words, 'hidden', true);
+  place.replaceChildren(faultList('The link', result.faults));
   set(place, 'hidden', null);
 }
 

@@ -21,7 +21,7 @@ for (const card of document.querySelectorAll('button[data-shipped]')) {
       return;
     }
     const place = root.querySelector('.fault-place');
-    place?.replaceChildren(faultList(result.faults));
+    place?.replaceChildren(faultList('The floor', result.faults));
     place?.scrollIntoView({ block: 'center' });
   });
 }

@@ -116,7 +116,11 @@ export class Pins {
     const right = x + LEADER + width < c.width - 8 ? 1 : -1;
     const up = y - LEADER > 26 ? -1 : 1;
     const [ex, ey] = [x + right * LEADER, y + up * LEADER];
-    set(this.#leader, 'd', `M${px(x)} ${px(y)}L${px(ex)} ${px(ey)}h${px(right * width)}`);
+    // The gap itself, from the hull to the solid, and from there to the words.
+    const far = Math.hypot(x - cx, y - cy);
+    const rim = far > 0 ? Math.min((hello.hull * c.scale) / far, 1) : 0;
+    const [rx, ry] = [cx + (x - cx) * rim, cy + (y - cy) * rim];
+    set(this.#leader, 'd', `M${px(rx)} ${px(ry)}L${px(x)} ${px(y)}L${px(ex)} ${px(ey)}h${px(right * width)}`);
     set(this.#text, 'x', px(ex + right * 3));
     set(this.#text, 'y', px(ey - 5));
     set(this.#text, 'text-anchor', right > 0 ? 'start' : 'end');

@@ -11,15 +11,15 @@ const CUT = 100;
 const MOST = 100;
 
 /**
+ * @param {string} what was to be opened: the name of a file, or "The link"
  * @param {Fault[]} faults
  * @param {string} [source] the text of the file
- * @param {string} [name] of the file
  * @returns {HTMLElement}
  */
-export function faultList(faults, source, name) {
+export function faultList(what, faults, source) {
   const lines = source?.split(/\r?\n/) ?? [];
   const many = faults.length === 1 ? 'One thing is' : `${faults.length} things are`;
-  const head = source === undefined ? 'It could not be opened.' : `${many} wrong in ${name ?? 'the file'}:`;
+  const head = source === undefined ? `${what} could not be opened.` : `${many} wrong in ${what}:`;
   const list = html('ol', { class: 'faults' }, ...faults.slice(0, MOST).map((f) => item(f, lines)));
   const rest = faults.length > MOST ? [html('p', { class: 'soft' }, `… and ${faults.length - MOST} more.`)] : [];
   return html('div', { class: 'fault-box', role: 'alert' }, html('p', { class: 'fault-head' }, head), list, ...rest);

@@ -24,11 +24,11 @@ export function intake(root, reveal = () => {}) {
   if (!(file instanceof HTMLInputElement) || !(link instanceof HTMLInputElement)) throw new Error('the page has no intake');
 
   /**
+   * @param {string} what it is, in words
    * @param {Wanted} wanted
    * @param {string} [source]
-   * @param {string} [name]
    */
-  const take = async (wanted, source, name) => {
+  const take = async (what, wanted, source) => {
     set(root, 'data-busy', true);
     const result = await open({ ...wanted, playing: true });
     set(root, 'data-busy', null);
@@ -37,7 +37,7 @@ export function intake(root, reveal = () => {}) {
       return;
     }
     reveal();
-    faults.replaceChildren(faultList(result.faults, source, name));
+    faults.replaceChildren(faultList(what, result.faults, source));
     faults.scrollIntoView({ block: 'nearest' });
   };
 
@@ -45,11 +45,11 @@ export function intake(root, reveal = () => {}) {
   const read = async (f) => {
     if (f.size > LARGEST) {
       reveal();
-      faults.replaceChildren(faultList([{ text: `${f.name} is far larger than any scenario file.` }]));
+      faults.replaceChildren(faultList(f.name, [{ text: 'It is far larger than any scenario file.' }]));
       return;
     }
     const text = await f.text();
-    await take({ scenario: text }, text, f.name);
+    await take(f.name, { scenario: text }, text);
   };
 
   file.addEventListener('change', async () => {
@@ -61,8 +61,8 @@ export function intake(root, reveal = () => {}) {
   form.addEventListener('submit', async (event) => {
     event.preventDefault();
     const data = dataOf(link.value);
-    if (data) await take({ link: data });
-    else faults.replaceChildren(faultList([{ text: 'That is not a Leeway link. A link ends in # and a run of letters and digits; paste all of it.' }]));
+    if (data) await take('The link', { link: data });
+    else faults.replaceChildren(faultList('The link', [{ text: 'A link ends in # and a run of letters and digits; paste all of it.' }]));
   });
 
   drop(read);

@@ -31,7 +31,7 @@ export class Why {
     set(this.#card, 'data-look', mode.look);
     const side = mode.look === 'wall' ? SIDES.get(frame.side) ?? '' : '';
     say(this.#name, capital(mode.name) + side);
-    say(this.#since, `since ${clock(frame.since)}`);
+    say(this.#since, `Since ${clock(frame.since)}.`);
     if (frame.why !== this.#said) {
       this.#said = frame.why;
       this.#why.replaceChildren(...sentence(frame.why));
