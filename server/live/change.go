@@ -50,7 +50,7 @@ func (s *Session) play(now time.Time) {
 	if s.playing {
 		return
 	}
-	if s.run.Outcome().Status != sim.Running {
+	if !s.run.Going() {
 		if err := s.begin(s.again()); err != nil {
 			s.lab.opt.Log.Error("a run cannot start again", "session", s.id, "error", err)
 			return
@@ -143,7 +143,7 @@ func (s *Session) edit(e sim.Edit) error {
 		s.trail.Note(s.run)
 	}
 	s.edited()
-	if s.resume && s.run.Outcome().Status == sim.Running {
+	if s.resume && s.run.Going() {
 		s.playing, s.resume = true, false
 		s.setClock(time.Now())
 	}

@@ -3,6 +3,7 @@ package live
 import (
 	"context"
 	"errors"
+	"math"
 	"reflect"
 	"sync/atomic"
 	"time"
@@ -221,7 +222,11 @@ func (s *Session) nextWake(now time.Time) (wake time.Time, ok bool) {
 	case len(s.viewers) == 0:
 		sooner(now.Add(unseenEvery))
 	default:
-		sooner(s.nextFrame)
+		t := s.tickDue()
+		if s.nextFrame.After(t) {
+			t = s.nextFrame
+		}
+		sooner(t)
 	}
 	return wake, ok
 }
@@ -232,6 +237,13 @@ func (s *Session) setClock(now time.Time) { s.clock, s.clockTick = now, s.run.Ti
 // target returns the tick at which a playing run with a speed ought to be.
 func (s *Session) target(now time.Time) int64 {
 	return s.clockTick + int64(now.Sub(s.clock).Seconds()*s.speed/s.dt)
+}
+
+// tickDue returns when a playing run with a speed ought to step next: a moment
+// later than that, so that no rounding can have target disagree.
+func (s *Session) tickDue() time.Time {
+	ticks := float64(s.run.Tick() + 1 - s.clockTick)
+	return s.clock.Add(time.Duration(math.Ceil(ticks*s.dt/s.speed*1e9)) + time.Microsecond)
 }
 
 // advance steps a playing run up to where it ought to be, or for one slice. The
@@ -267,14 +279,13 @@ func (s *Session) advance(now time.Time) {
 	s.saveBy(now.Add(saveEvery))
 }
 
-// step goes on by one tick. It returns false when the run has ended: then
+// step goes on by one tick. It returns false when the run has ended for good: then
 // nothing has changed.
 func (s *Session) step() bool {
-	before := s.run.Tick()
-	s.run.Step()
-	if s.run.Tick() == before {
+	if !s.run.Going() {
 		return false
 	}
+	s.run.Step()
 	s.changed = true
 	if s.trail.Note(s.run) {
 		s.anew = true // the spots have other numbers now

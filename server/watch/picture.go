@@ -31,15 +31,16 @@ func Finish(s *scenario.Scenario, each func(*sim.Run)) (*Finished, error) {
 		return nil, err
 	}
 	f := &Finished{Scenario: s, Run: r}
-	for before := int64(-1); r.Tick() != before; {
-		before = r.Tick()
+	for {
 		f.Trail.Note(r)
 		if each != nil {
 			each(r)
 		}
+		if !r.Going() {
+			return f, nil
+		}
 		r.Step()
 	}
-	return f, nil
 }
 
 // Look returns how a mode is painted.
