@@ -23,13 +23,14 @@ type Run struct {
 	engine *logic.Engine
 	input  logic.Input
 
-	pose  geom.Pose
-	goal  geom.Vec
-	u     geom.Vec // wanted velocity, in the believed frame
-	cmd   drive.Wheels
-	since int64    // tick from which what is asked "within" counts
-	ended int64    // tick at which the run ended, if it has
-	idled int64    // ticks passed in ended states before the present one
+	pose    geom.Pose
+	goal    geom.Vec
+	u       geom.Vec     // wanted velocity, in the believed frame
+	cmd     drive.Wheels // commanded wheel speeds
+	limited bool         // the saturation rule had to limit them
+	since   int64        // tick from which what is asked "within" counts
+	ended   int64        // tick at which the run ended, if it has
+	idled   int64        // ticks passed in ended states before the present one
 
 	edits []Edit
 	due   int // edits[:due] are done

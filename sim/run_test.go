@@ -16,7 +16,7 @@ func TestTheRealRobotArrives(t *testing.T) {
 	if o.Status != sim.Arrived {
 		t.Fatalf("%v: %s", o.Status, o.Reason)
 	}
-	if o.Way < 10 || o.Way > 25 || o.Switches < 2 || o.EstimateError == 0 || o.Saturated <= 0 {
+	if o.Saturated > 1 || o.Way < 10 || o.Way > 25 || o.Switches < 2 || o.EstimateError == 0 || o.Saturated <= 0 {
 		t.Errorf("implausible measures: %+v", o)
 	}
 }
@@ -37,6 +37,17 @@ func TestLeewayIsTheLeastGap(t *testing.T) {
 		if o := r.Outcome(); o.Leeway != least {
 			t.Errorf("seed %d: leeway %g, least gap of all ticks %g", seed, o.Leeway, least)
 		}
+	}
+}
+
+// The share of the time that a wheel is at a limit is a share, also where both the
+// speed and the acceleration are at theirs.
+func TestSaturationIsAShare(t *testing.T) {
+	c := realRobot()
+	c.Drive.MaxWheelSpeed, c.Steer.MaxWheelSpeed, c.Drive.MaxWheelAccel = 3, 3, 2
+	c.Asked.Within = 20
+	if o := newRun(t, c).Finish(); o.Saturated <= 0.3 || o.Saturated > 1 {
+		t.Errorf("wheels too weak for anything are at their limit for a share of %g", o.Saturated)
 	}
 }
 

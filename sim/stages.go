@@ -67,11 +67,7 @@ func (r *Run) steer() {
 		return
 	}
 	v, omega := r.cfg.Steer.TwistOver(r.u, r.drive.Estimate().Theta, r.dt)
-	var limited bool
-	r.cmd, limited = r.cfg.Steer.Wheels(v, omega)
-	if limited {
-		r.saturated++
-	}
+	r.cmd, r.limited = r.cfg.Steer.Wheels(v, omega)
 }
 
 // actuate is stage 6: dead time, acceleration limit, lag.
@@ -79,9 +75,8 @@ func (r *Run) actuate() {
 	if r.cfg.Drive.Model == drive.Point {
 		return
 	}
-	before := r.saturated
 	r.drive.Actuate(r.cmd)
-	if r.drive.Saturated() && before == r.saturated {
+	if r.limited || r.drive.Saturated() {
 		r.saturated++
 	}
 }
