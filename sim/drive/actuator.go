@@ -118,7 +118,7 @@ func (a *actuator) follow(w *wheel, from, rate, h float64, d decay) {
 	w.speed = from + float64(behind*d.keep)
 	if rate != 0 {
 		late := h - d.mean
-		w.turn += float64(rate * (float64(h*h)/2 - float64(a.lag*late)))
+		w.turn += float64(rate * (float64(h*h/2) - float64(a.lag*late)))
 		w.speed += float64(rate * late)
 	}
 }

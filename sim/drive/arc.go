@@ -12,7 +12,7 @@ import "leeway/sim/geom"
 // Fox, Probabilistic Robotics, 5.3, in the form without a radius.) The heading
 // is not wrapped. Mirrored arguments give the mirrored result, bit for bit.
 func Arc(p geom.Pose, travel, turn float64) geom.Pose {
-	half := turn / 2
+	half := float64(turn / 2) // a division by 2 is fused, too
 	sin, cos := geom.Sincos(p.Theta + half)
 	chord := float64(travel * sinc(half))
 	return geom.Pose{

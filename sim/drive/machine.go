@@ -93,7 +93,7 @@ type Wheels struct{ Left, Right float64 }
 // radius and track (m) drives at v (m/s) and turns at omega (rad/s, left
 // positive): (v ∓ ω·track/2)/radius.
 func WheelsFor(v, omega, radius, track float64) Wheels {
-	half := float64(omega*track) / 2
+	half := float64(omega * track / 2)
 	return Wheels{Left: (v - half) / radius, Right: (v + half) / radius}
 }
 

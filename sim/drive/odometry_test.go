@@ -305,6 +305,15 @@ func TestFixes(t *testing.T) {
 			t.Error("no fix")
 		}
 	})
+	t.Run("none at the start, which is known", func(t *testing.T) {
+		c := perfect()
+		c.FixEvery, c.FixNoise = 0.1, 0.02
+		d := drive.New(c, 0.005, 1, start)
+		d.Reckon(0, start)
+		if believed(d.Estimate()) != start {
+			t.Errorf("believes %v", d.Estimate())
+		}
+	})
 	t.Run("how far they err", func(t *testing.T) {
 		c := perfect()
 		c.FixEvery, c.FixNoise, c.FixTurnNoise = 0.005, 0.02, 0.01

@@ -73,7 +73,7 @@ func DelayPole(k, deadTime float64) (decay, swing float64) {
 // last bit or nearly so.
 func bisect(lo, hi float64, below func(float64) bool) float64 {
 	for range 100 {
-		mid := lo + (hi-lo)/2
+		mid := lo + float64((hi-lo)/2)
 		if mid == lo || mid == hi {
 			break
 		}
@@ -83,7 +83,7 @@ func bisect(lo, hi float64, below func(float64) bool) float64 {
 			hi = mid
 		}
 	}
-	return lo + (hi-lo)/2
+	return lo + float64((hi-lo)/2)
 }
 
 // LagDamping returns the damping ratio ζ = 1/(2√(kτ)) of the servo of gain k

@@ -42,6 +42,11 @@ func TestMirror(t *testing.T) {
 		if v2 != v || omega2 != -omega {
 			t.Fatalf("(%v, %v) mirrors to (%v, %v)", v, omega, v2, omega2)
 		}
+		held, heldOmega := c.TwistOver(u, theta, 0.005)
+		held2, heldOmega2 := c.TwistOver(geom.Vec{X: u.X, Y: -u.Y}, -theta, 0.005)
+		if held2 != held || heldOmega2 != -heldOmega {
+			t.Fatalf("held, (%v, %v) mirrors to (%v, %v)", held, heldOmega, held2, heldOmega2)
+		}
 		w, l := c.Wheels(v, omega)
 		w2, l2 := c.Wheels(v2, omega2)
 		if w2 != (drive.Wheels{Left: w.Right, Right: w.Left}) || l != l2 {
@@ -99,9 +104,12 @@ func TestTwistIsTheFormula(t *testing.T) {
 
 func TestNoWishNoMotion(t *testing.T) {
 	for _, rule := range []steer.Config{servo(3), ahead(0.1)} {
-		for _, u := range []geom.Vec{{}, {X: math.Copysign(0, -1)}, {Y: math.Copysign(0, -1)}} {
-			if v, omega := rule.Twist(u, 1.3); v != 0 || omega != 0 {
-				t.Errorf("a zero wish gives (%v, %v)", v, omega)
+		zero := math.Copysign(0, -1)
+		for _, u := range []geom.Vec{{}, {X: zero}, {Y: zero}, {X: zero, Y: zero}} {
+			for theta := -4.0; theta < 4; theta++ { // a zero has a direction for atan2
+				if v, omega := rule.Twist(u, theta); v != 0 || omega != 0 {
+					t.Errorf("a zero wish %v at %v gives (%v, %v)", u, theta, v, omega)
+				}
 			}
 		}
 	}
@@ -156,6 +164,15 @@ func TestSaturationKeepsWhatItSays(t *testing.T) {
 			}
 		}
 	})
+}
+
+func TestAtTheLimitIsWithin(t *testing.T) {
+	for _, s := range []steer.Saturation{steer.KeepCurve, steer.KeepTurn, steer.ClipEach} {
+		c := steer.Config{WheelRadius: 0.5, Track: 1, MaxWheelSpeed: 2, Saturation: s}
+		if w, limited := c.Wheels(1, 0); limited || w != (drive.Wheels{Left: 2, Right: 2}) {
+			t.Errorf("rule %d: %v, limited %v", s, w, limited)
+		}
+	}
 }
 
 // Saturation is continuous: just inside the limit and just outside, the wheels are alike.
@@ -217,24 +234,40 @@ func TestCeilingWithoutLimit(t *testing.T) {
 }
 
 func TestDelayPoleSolvesItsEquation(t *testing.T) {
-	rapid.Check(t, func(t *rapid.T) {
-		k := rapid.Float64Range(0.01, 50).Draw(t, "k")
-		delay := rapid.Float64Range(1e-6, 3).Draw(t, "T")
+	solves := func(t interface{ Fatalf(string, ...any) }, k, delay float64) {
 		decay, swing := steer.DelayPole(k, delay)
 		// s + k e^(−sT), both parts.
 		grow := k * math.Exp(-decay*delay)
 		re := decay + grow*math.Cos(swing*delay)
 		im := swing - grow*math.Sin(swing*delay)
-		// At kT = 1/e two roots meet, and the residual is all there is to go by.
 		if math.Hypot(re, im) > 1e-9*(1+math.Hypot(decay, swing)) {
 			t.Fatalf("s = %v + %vi leaves %v, %v", decay, swing, re, im)
 		}
 		if (k*delay < math.Pi/2) != (decay < 0) || (k*delay > 1/math.E) != (swing > 0) {
 			t.Fatalf("kT = %v, s = %v + %vi", k*delay, decay, swing)
 		}
+	}
+	rapid.Check(t, func(t *rapid.T) {
+		solves(t, rapid.Float64Range(0.01, 50).Draw(t, "k"), rapid.Float64Range(1e-6, 3).Draw(t, "T"))
 	})
+	for _, g := range []float64{0.3, 0.34, 0.3678, 0.367879, 0.367880, 0.37, 0.4, 1.57, 1.571} {
+		solves(t, g, 1)
+		solves(t, 4*g, 0.25)
+	}
 	if s, swing := steer.DelayPole(3, 0); s != -3 || swing != 0 {
 		t.Errorf("without dead time s = %v + %vi", s, swing)
+	}
+}
+
+// The two poles of the late servo have the product kT and the sum 1.
+func TestLateModulus(t *testing.T) {
+	for _, g := range []float64{0, 0.01, 0.1, 0.2, 0.25} {
+		z := steer.LateModulus(g, 1)
+		within(t, "z(1−z), calm", z*(1-z), g, 1e-15)
+	}
+	for _, g := range []float64{0.2501, 0.28, 0.5, 1, 2} {
+		z := steer.LateModulus(2*g, 0.5)
+		within(t, "|z|², swinging", z*z, g, 1e-15)
 	}
 }
 
@@ -259,7 +292,8 @@ func FuzzSteerStaysFinite(f *testing.F) {
 			Gain: gain, TurnBeyond: 1, Ahead: l, WheelRadius: 0.05, Track: 0.3, MaxWheelSpeed: most}
 		v, omega := c.Twist(geom.Vec{X: ux, Y: uy}, theta)
 		w, _ := c.Wheels(v, omega)
-		for _, x := range []float64{v, omega, w.Left, w.Right} {
+		heldV, heldOmega := c.TwistOver(geom.Vec{X: ux, Y: uy}, theta, 0.005)
+		for _, x := range []float64{v, omega, heldV, heldOmega, w.Left, w.Right} {
 			if math.IsNaN(x) || math.IsInf(x, 0) {
 				t.Fatalf("(%v, %v), %v", v, omega, w)
 			}

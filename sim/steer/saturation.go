@@ -30,7 +30,7 @@ func (c *Config) Wheels(v, omega float64) (w drive.Wheels, limited bool) {
 	}
 	switch c.Saturation {
 	case KeepTurn:
-		turn := clip(float64(omega*c.Track)/2/c.WheelRadius, most)
+		turn := clip(float64(omega*c.Track/2)/c.WheelRadius, most)
 		ahead := clip(v/c.WheelRadius, most-math.Abs(turn))
 		w = drive.Wheels{Left: clip(ahead-turn, most), Right: clip(ahead+turn, most)}
 	case ClipEach:

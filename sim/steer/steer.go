@@ -1,9 +1,10 @@
 // Package steer turns a wanted planar velocity into wheel speeds: the step from
 // the point that a plan is made for to the machine that carries it out.
 //
-// [Config.Twist] applies a steering rule, u → (v, ω); [Config.Wheels] turns (v, ω)
-// into wheel speeds within the limit, giving up what the saturation rule says.
-// Both are functions of their arguments alone: what is remembered, is remembered
+// [Config.Twist] applies a steering rule, u → (v, ω), and [Config.TwistOver] does so
+// for a machine that holds (v, ω) for a tick; [Config.Wheels] turns (v, ω) into
+// wheel speeds within the limit, giving up what the saturation rule says.
+// All are functions of their arguments alone: what is remembered, is remembered
 // by drive and logic.
 //
 // # The two rules
