@@ -50,15 +50,16 @@ func DistanceToSegment(p Vec, s Segment) float64 {
 func DistanceToDisc(p Vec, d Disc) float64 { return p.Sub(d.Center).Norm() - d.Radius }
 
 // Cross reports whether s and t have a point in common; a touch counts. The
-// sides are decided by plain rounded cross products.
+// sides are decided by plain rounded cross products, so the boxes round s and t are
+// asked first: for two apart on one slanted line the signs are chance.
 func (s Segment) Cross(t Segment) bool {
+	if min(s.A.X, s.B.X) > max(t.A.X, t.B.X) || min(t.A.X, t.B.X) > max(s.A.X, s.B.X) ||
+		min(s.A.Y, s.B.Y) > max(t.A.Y, t.B.Y) || min(t.A.Y, t.B.Y) > max(s.A.Y, s.B.Y) {
+		return false
+	}
 	se, te := s.B.Sub(s.A), t.B.Sub(t.A)
 	a, b := se.Cross(t.A.Sub(s.A)), se.Cross(t.B.Sub(s.A))
 	c, d := te.Cross(s.A.Sub(t.A)), te.Cross(s.B.Sub(t.A))
-	if a == 0 && b == 0 && c == 0 && d == 0 { // on one line: their boxes decide
-		return min(s.A.X, s.B.X) <= max(t.A.X, t.B.X) && min(t.A.X, t.B.X) <= max(s.A.X, s.B.X) &&
-			min(s.A.Y, s.B.Y) <= max(t.A.Y, t.B.Y) && min(t.A.Y, t.B.Y) <= max(s.A.Y, s.B.Y)
-	}
 	return (a <= 0 && b >= 0 || a >= 0 && b <= 0) && (c <= 0 && d >= 0 || c >= 0 && d <= 0)
 }
 

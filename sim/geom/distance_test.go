@@ -110,3 +110,16 @@ func TestSimple(t *testing.T) {
 		}
 	}
 }
+
+// Two edges in line, apart from each other on a slanted line: the rounded cross
+// products of this pair have opposite signs.
+func TestSegmentsApartOnOneLineDoNotCross(t *testing.T) {
+	s := Segment{Vec{4.087729633363474, 5.284297319857221}, Vec{3.7754691639180917, 5.399253032187515}}
+	u := Segment{Vec{5.916125267001206, 4.61119091333788}, Vec{5.603864797555824, 4.726146625668173}}
+	if s.Cross(u) || u.Cross(s) {
+		t.Error("two segments 1.6 m apart are said to cross")
+	}
+	if !s.Cross(Segment{s.B, u.A}) || !s.Cross(s) {
+		t.Error("segments that share a point are said not to")
+	}
+}
