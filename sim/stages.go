@@ -94,12 +94,10 @@ func (r *Run) move() {
 	from := r.pose.Pos
 	d := to.Pos.Sub(from)
 	r.pose.Theta = to.Theta
-	if r.room-d.Norm() > r.cfg.Hull {
-		r.pose.Pos = from.Add(d)
-	} else {
-		end, c, touched := r.world.Sweep(from, d, r.cfg.Hull)
-		r.pose.Pos = end
-		if touched {
+	r.pose.Pos = to.Pos // not from + d, which may round differently from what the encoders tell
+	if r.room-d.Norm() <= r.cfg.Hull {
+		if end, c, touched := r.world.Sweep(from, d, r.cfg.Hull); touched {
+			r.pose.Pos = end
 			r.touch(c)
 		}
 	}
