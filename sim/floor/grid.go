@@ -156,7 +156,7 @@ const (
 func (m *Map) entries(reach, size float64) float64 {
 	wide := 2 * reach
 	cells := func(along, across float64) float64 {
-		return ((along+wide)/size + 2) * ((across+wide)/size + 2)
+		return float64(((along+wide)/size + 2) * ((across+wide)/size + 2))
 	}
 	sum := 0.0
 	for _, s := range m.segs {

@@ -68,7 +68,7 @@ func newSight(m *Map, reach float64) sight {
 	// A circle of this radius holds about crowd primitives.
 	far := math.Sqrt(crowd * (w + reach) * (h + reach) / (math.Pi * n))
 	s := sight{reach: min(reach, far)}
-	cells := min(cellsPerPrimitive*n+512, mostCells)
+	cells := min(float64(cellsPerPrimitive*n)+512, mostCells)
 	size := max(s.reach/4, math.Sqrt(w*h/cells), max(w, h)/cells, finestCell)
 	for size < max(w, h) && m.entries(s.reach, size) > mostEntries {
 		size *= 2
