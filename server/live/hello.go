@@ -96,7 +96,7 @@ func (s *Session) hello() []byte {
 	}
 	for i := range s.floor.Solids {
 		solid := r.World().SolidAt(i)
-		_, fixed, _ := s.sc.SolidIndex(solid.ID)
+		fixed := i >= len(s.sc.Floor.Walls)+len(s.sc.Floor.Solids) // the border comes last
 		h.Solids = append(h.Solids, helloSolid{
 			solid.ID, string(watch.Shape(solid.Kind)), pairs(solid.Points, geom.Vec{}), tidy(solid.Radius), fixed,
 		})

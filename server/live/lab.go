@@ -148,21 +148,27 @@ func looksLikeID(id string) bool {
 
 // begin starts the loop of a session.
 func (l *Lab) begin(ctx context.Context, sc *scenario.Scenario, kept store.Session) error {
-	if err := l.makeRoom(ctx); err != nil {
-		return err
-	}
 	s, err := newSession(l, sc, kept)
 	if err != nil {
 		return err
 	}
-	l.mu.Lock()
-	defer l.mu.Unlock()
-	if l.closed {
-		return ErrClosed
+	for {
+		if err := l.makeRoom(ctx); err != nil {
+			return err
+		}
+		l.mu.Lock()
+		switch {
+		case l.closed:
+			l.mu.Unlock()
+			return ErrClosed
+		case len(l.sessions) < l.opt.Sessions:
+			l.sessions[kept.ID] = s
+			l.loops.Go(func() { s.loop(l.ctx, kept.Tick) })
+			l.mu.Unlock()
+			return nil
+		}
+		l.mu.Unlock() // somebody else took the room
 	}
-	l.sessions[kept.ID] = s
-	l.loops.Go(func() { s.loop(l.ctx, kept.Tick) })
-	return nil
 }
 
 // makeRoom ends the session that has been without viewers for longest when the

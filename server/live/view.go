@@ -1,6 +1,8 @@
 package live
 
 import (
+	"maps"
+	"slices"
 	"time"
 
 	"leeway/sim"
@@ -96,11 +98,9 @@ func (s *Session) fillFrame() {
 	}
 	f.Goal = pair(s.place(thing{kind: sim.MoveGoal}))
 	f.Moved = f.Moved[:0]
-	for i := range s.floor.Solids { // in order, not that of the map
-		if s.moved[i] {
-			at := s.place(thing{sim.MoveSolid, i})
-			f.Moved = append(f.Moved, movedSolid{s.floor.Solids[i].ID, at.X, at.Y})
-		}
+	for _, i := range slices.Sorted(maps.Keys(s.moved)) {
+		at := s.place(thing{sim.MoveSolid, i})
+		f.Moved = append(f.Moved, movedSolid{s.floor.Solids[i].ID, at.X, at.Y})
 	}
 	f.Status, f.Reason, f.Hash = o.Status.String(), o.Reason, o.Hash
 	f.TrailFrom, f.Trail = s.told, s.trail.Spots()[s.told:]

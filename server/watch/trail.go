@@ -37,13 +37,13 @@ func (t *Trail) Reset() { t.spots, t.apart = t.spots[:0], spacing }
 // Note looks at where the run is now. It reports whether the trail was thinned,
 // which changes the numbers of all spots.
 func (t *Trail) Note(r *sim.Run) (thinned bool) {
-	if t.apart == 0 {
-		t.Reset()
-	}
 	return t.add(r.Pose().Pos, r.Engine().Mode())
 }
 
 func (t *Trail) add(p geom.Vec, mode int) (thinned bool) {
+	if t.apart == 0 {
+		t.Reset()
+	}
 	if n := len(t.spots); n > 0 {
 		last := &t.spots[n-1]
 		dx, dy := p.X-last.X, p.Y-last.Y
