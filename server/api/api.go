@@ -23,6 +23,7 @@ package api
 import (
 	"context"
 	"log/slog"
+	"net"
 	"net/http"
 	"time"
 
@@ -75,13 +76,19 @@ func New(c Config) http.Handler {
 		r.Get("/open", s.open)
 		r.Get("/healthz", s.health)
 		r.Get("/schema.json", s.schema)
-		limit := httprate.Limit(c.Creations, time.Minute,
-			httprate.WithKeyByIP(), httprate.WithLimitHandler(s.tooMany))
+		limit := httprate.LimitBy(c.Creations, time.Minute, clientAddress, httprate.WithLimitHandler(s.tooMany))
 		r.With(limit).Post("/api/sessions", s.create)
 		r.Get("/api/sessions/{session}/scenario", s.file)
 		r.Get("/api/sessions/{session}/link", s.link)
 	})
 	return r
+}
+
+// clientAddress tells clients apart by where they connect from. What a proxy says
+// about its clients is not believed: anybody could say it.
+func clientAddress(r *http.Request) (string, error) {
+	host, _, err := net.SplitHostPort(r.RemoteAddr)
+	return httprate.CanonicalizeIP(host), err
 }
 
 // inTime gives up on a request that takes too long. It must not be put before the

@@ -334,6 +334,26 @@ func TestPagesLoadFromThisServerAlone(t *testing.T) {
 	}
 }
 
+func TestTextOfAFileStaysText(t *testing.T) {
+	s := newSite(t, nil)
+	sc, err := scenario.Parse(pocket(t).Data)
+	if err != nil {
+		t.Fatal(err)
+	}
+	sc.Name = `</script><script>alert("1")</script><b onclick="x()">&amp;`
+	sc.Floor.Solids[0].ID = `"><img src=x onerror=x()>`
+	id := s.opened(text(map[string]any{"scenario": string(sc.Print())}))
+	_, page, _ := s.do("GET", "/bench/"+id, "")
+	for _, live := range []string{"<script>alert", "<b onclick", "<img src=x"} {
+		if strings.Contains(page, live) {
+			t.Errorf("the page has %s", live)
+		}
+	}
+	if !strings.Contains(page, "alert(") {
+		t.Error("the name is not on the page at all")
+	}
+}
+
 func TestStartPageShowsEveryShippedScenario(t *testing.T) {
 	s := newSite(t, nil)
 	_, page, _ := s.do("GET", "/", "")

@@ -7,7 +7,6 @@ import (
 	"testing"
 	"time"
 
-	"leeway/scenarios"
 	"leeway/server/store"
 	"leeway/sim"
 	"leeway/sim/scenario"
@@ -206,19 +205,6 @@ func room(t testing.TB) *scenario.Scenario {
 				{"id": "post", "center_m": [6, 1.2], "radius_m": 0.2}],
 			"movers": [{"id": "cart", "radius_m": 0.2, "route_m": [[1, 5.4], [3, 5.4]], "speed_m_s": 0.3}]},
 		"start": {"x_m": 1, "y_m": 3}, "goal": {"x_m": 7, "y_m": 3, "radius_m": 0.3}}`))
-	if err != nil {
-		t.Fatal(err)
-	}
-	return sc
-}
-
-func shipped(t testing.TB, slug string) *scenario.Scenario {
-	t.Helper()
-	e, ok := scenarios.Find(slug)
-	if !ok {
-		t.Fatalf("no shipped scenario %s", slug)
-	}
-	sc, err := scenario.Parse(e.Data)
 	if err != nil {
 		t.Fatal(err)
 	}

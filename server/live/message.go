@@ -29,28 +29,28 @@ type message struct {
 	choice string  // Value of a choice
 }
 
-// parseMessage reads a viewer's message. The error is a sentence for the viewer.
+// parseMessage reads a viewer's message. The error is for the viewer.
 func parseMessage(data []byte) (*message, error) {
 	var m message
 	if err := json.Unmarshal(data, &m); err != nil {
-		return nil, errors.New("That message is not JSON of the kind that Leeway understands.")
+		return nil, errors.New("that message is not JSON of the kind that Leeway understands")
 	}
 	switch m.Kind {
 	case "play", "pause", "tick", "restart", "resync":
 	case "drag":
 		if math.Abs(m.X) > farAway || math.Abs(m.Y) > farAway {
-			return nil, errors.New("That place is out of this world.")
+			return nil, errors.New("that place is out of this world")
 		}
 	case "speed", "number":
 		if err := json.Unmarshal(m.Value, &m.number); err != nil || string(m.Value) == "null" {
-			return nil, fmt.Errorf("The value of a %s is a number.", m.Kind)
+			return nil, fmt.Errorf("the value of a %s is a number", m.Kind)
 		}
 	case "choice":
 		if err := json.Unmarshal(m.Value, &m.choice); err != nil || string(m.Value) == "null" {
-			return nil, errors.New("The value of a choice is one of its options.")
+			return nil, errors.New("the value of a choice is one of its options")
 		}
 	default:
-		return nil, errors.New("That message is of no kind that Leeway understands.")
+		return nil, errors.New("that message is of no kind that Leeway understands")
 	}
 	return &m, nil
 }

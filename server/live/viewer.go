@@ -231,7 +231,7 @@ func read(ctx context.Context, conn *websocket.Conn, s *Session, v *viewer) {
 		}
 		m, err := parseMessage(data)
 		if kind != websocket.MessageText {
-			err = errors.New("Messages are JSON texts.")
+			err = errors.New("messages are JSON texts")
 		}
 		if err != nil {
 			v.putNote(problem("message", err.Error()))

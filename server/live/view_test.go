@@ -1,0 +1,185 @@
+package live
+
+import (
+	"fmt"
+	"math/rand/v2"
+	"strings"
+	"testing"
+	"testing/synctest"
+	"time"
+)
+
+// settle lets frames that are due go out.
+func settle() {
+	time.Sleep(2 * frameEvery)
+	synctest.Wait()
+}
+
+func TestHelloSaysEverything(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newBench(t, room(t), Opening{Tick: 400})
+		v := b.join()
+		settle()
+		messages := v.take()
+		if kindOf(t, messages[0]) != "hello" {
+			t.Fatalf("the first message is %s", messages[0])
+		}
+		g := greet(t, messages[0])
+		if g.Session != b.id || g.Name != "A room" || g.Tick != 0.005 || g.Playing || g.Speed != 1 || g.Viewers != 1 || g.IdleMinutes != 30 {
+			t.Errorf("%+v", g.hello)
+		}
+		if g.Bounds != [4]float64{0, 0, 8, 6} || g.Start != [3]float64{1, 3, 0} || g.Goal != [3]float64{7, 3, 0.3} || g.Hull != 0.21 {
+			t.Errorf("bounds %v, start %v, goal %v, hull %v", g.Bounds, g.Start, g.Goal, g.Hull)
+		}
+		var ids []string
+		for _, s := range g.Solids {
+			ids = append(ids, fmt.Sprintf("%s %s %d %v", s.ID, s.Shape, len(s.Points), s.Fixed))
+		}
+		if got := strings.Join(ids[:3], ", "); got != "screen wall 2 false, desk polygon 4 false, post disc 1 false" {
+			t.Error(got)
+		}
+		if len(ids) < 4 || !g.Solids[len(ids)-1].Fixed {
+			t.Errorf("the border is not fixed: %v", ids)
+		}
+		if len(g.Movers) != 1 || g.Movers[0].ID != "cart" || len(g.Movers[0].Route) != 2 {
+			t.Errorf("movers %+v", g.Movers)
+		}
+		if g.File != string(b.text()) {
+			t.Error("the file is another")
+		}
+		if len(g.Trail) < 2 || g.Frame.TrailFrom != len(g.Trail) || len(g.Frame.Trail) != 0 || g.Frame.Tick != 400 {
+			t.Errorf("%d spots; frame from %d with %d at tick %d", len(g.Trail), g.Frame.TrailFrom, len(g.Frame.Trail), g.Frame.Tick)
+		}
+		looks := map[string]bool{}
+		for _, m := range g.Modes {
+			looks[m.Look] = true
+		}
+		for _, l := range []string{"goal", "wall", "avoid", "done", "fail"} {
+			if !looks[l] {
+				t.Errorf("no mode looks like %s: %+v", l, g.Modes)
+			}
+		}
+		var words strings.Builder
+		for _, p := range g.Brief {
+			words.WriteString(p.Text)
+			if p.Number != "" {
+				if p.Min == nil || p.Max == nil || p.Decimals == nil || p.Label == "" || p.Applies == "" {
+					t.Errorf("%+v", p)
+				}
+				fmt.Fprintf(&words, "[%v %s]", p.Value, p.Unit)
+			}
+			if p.Choice != "" {
+				if len(p.Options) < 2 {
+					t.Errorf("%+v", p)
+				}
+				fmt.Fprintf(&words, "[%v]", p.Value)
+			}
+		}
+		if want := "A robot of radius [0.21 m] moves [two_wheels] [0.3 m] apart at [0.45 m/s]"; !strings.HasPrefix(words.String(), want) {
+			t.Error(words.String())
+		}
+	})
+}
+
+// follower keeps a trail as the page does.
+type follower struct {
+	trail  [][3]float64
+	gaps   int
+	hellos int
+}
+
+func (f *follower) hear(t *testing.T, messages [][]byte) {
+	for _, m := range messages {
+		switch kindOf(t, m) {
+		case "hello":
+			f.trail = greet(t, m).Trail
+			f.hellos++
+		case "frame":
+			h := hear(t, m)
+			if h.TrailFrom != len(f.trail) {
+				f.gaps++
+				continue
+			}
+			f.trail = append(f.trail, h.Trail...)
+		}
+	}
+}
+
+func TestTrailGoesOnWithoutGapsWhoeverComesAndGoes(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newBench(t, room(t), Opening{Playing: true})
+		v := b.join()
+		var steady follower
+		var others []*viewer
+		r := rand.New(rand.NewPCG(5, 0))
+		for range 600 {
+			for range r.IntN(10) { // a viewer that keeps up reads more often than frames come
+				time.Sleep(5 * time.Millisecond)
+				synctest.Wait()
+				steady.hear(t, v.take())
+			}
+			switch r.IntN(8) {
+			case 0:
+				others = append(others, b.join())
+			case 1:
+				if n := len(others); n > 0 {
+					gone := others[n-1]
+					others = others[:n-1]
+					b.in(func() { b.s.leaves(gone) })
+				}
+			case 2:
+				if n := len(others); n > 0 {
+					b.say(others[r.IntN(n)], `{"kind":"resync"}`)
+				}
+			}
+			synctest.Wait()
+			steady.hear(t, v.take())
+		}
+		if steady.gaps > 0 || steady.hellos != 1 {
+			t.Errorf("%d gaps, %d hellos", steady.gaps, steady.hellos)
+		}
+		b.say(v, `{"kind":"pause"}`)
+		for range 20 {
+			time.Sleep(5 * time.Millisecond)
+			synctest.Wait()
+			steady.hear(t, v.take())
+		}
+		var spots int
+		b.in(func() { spots = b.s.told })
+		if len(steady.trail) != spots {
+			t.Errorf("%d spots of %d", len(steady.trail), spots)
+		}
+	})
+}
+
+func TestSlowViewerLosesFramesAndFindsOut(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newBench(t, room(t), Opening{Playing: true})
+		slow, quick := b.join(), b.join()
+		settle()
+		var f follower
+		f.hear(t, slow.take())
+		quick.take()
+		before := b.tick()
+		time.Sleep(5 * time.Second)
+		synctest.Wait()
+		waiting := slow.take()
+		if len(waiting) != 1 {
+			t.Fatalf("%d messages wait for a viewer that reads nothing", len(waiting))
+		}
+		newest := hear(t, last(t, quick.take(), "frame"))
+		if got := hear(t, waiting[0]); got.Tick != newest.Tick || got.Tick < before+900 {
+			t.Errorf("the frame that waits is of tick %d; the newest is %d, 5 s after %d", got.Tick, newest.Tick, before)
+		}
+		f.hear(t, waiting)
+		if f.gaps != 1 {
+			t.Fatal("the lost frames leave no gap in the trail")
+		}
+		b.say(slow, `{"kind":"resync"}`)
+		settle()
+		f.hear(t, slow.take())
+		if f.hellos != 2 || f.gaps != 1 {
+			t.Errorf("after a resync: %d hellos, %d gaps", f.hellos, f.gaps)
+		}
+	})
+}
