@@ -5,12 +5,13 @@ import { clock, count, fixed, metres, numbersIn, percent, place, seconds, speed 
 test('times', () => {
   assert.equal(clock(0), '0:00.0');
   assert.equal(clock(33.44), '0:33.4');
-  assert.equal(clock(59.99), '0:59.9');
+  assert.equal(clock(59.94), '0:59.9');
+  assert.equal(clock(59.96), '1:00.0');
   assert.equal(clock(60), '1:00.0');
-  assert.equal(clock(605.25), '10:05.2');
+  assert.equal(clock(605.21), '10:05.2');
   assert.equal(clock(0.1 + 0.2), '0:00.3');
   assert.equal(clock(0.3 - 1e-16), '0:00.3');
-  assert.equal(clock(28.7, 0), '0:28');
+  assert.equal(clock(28.7, 0), '0:29');
   assert.equal(clock(null), '–');
   assert.equal(clock(NaN), '–');
   assert.equal(seconds(60.44), '60.4\u00a0s');

@@ -167,8 +167,8 @@ function keys() {
   const dialog = byId('keys', HTMLDialogElement);
   byId('keys-open', HTMLButtonElement).addEventListener('click', () => dialog.showModal());
   const everywhere = byId('keys-on', HTMLInputElement);
-  everywhere.checked = localStorage.getItem(KEYS) !== 'off';
-  everywhere.addEventListener('change', () => localStorage.setItem(KEYS, everywhere.checked ? 'on' : 'off'));
+  everywhere.checked = remembered() !== 'off';
+  everywhere.addEventListener('change', () => remember(everywhere.checked ? 'on' : 'off'));
   addEventListener('keydown', (event) => {
     const does = everywhere.checked ? shortcut(event) : null;
     if (!does) return;
@@ -177,8 +177,25 @@ function keys() {
   });
 }
 
-/** Where the browser keeps whether single keys do something. */
+/** Under this name the browser keeps whether single keys do something; it may refuse to keep anything. */
 const KEYS = 'leeway single keys';
+
+function remembered() {
+  try {
+    return localStorage.getItem(KEYS);
+  } catch {
+    return null;
+  }
+}
+
+/** @param {string} value */
+function remember(value) {
+  try {
+    localStorage.setItem(KEYS, value);
+  } catch {
+    // Then it holds for this page alone.
+  }
+}
 
 function opener() {
   const dialog = byId('opener', HTMLDialogElement);

@@ -12,8 +12,8 @@ const NONE = '–';
 export function clock(s, decimals = 1) {
   if (!finite(s)) return NONE;
   const unit = 10 ** decimals;
-  // The small share of a unit keeps a time like 0.3 − 1e−16 from showing 0:00.2.
-  const ticks = Math.floor(Math.abs(s) * unit + 1e-6);
+  // Rounded before it is split, so that 59.96 is 1:00.0 and never 0:60.0.
+  const ticks = Math.round(Math.abs(s) * unit);
   const minutes = Math.floor(ticks / (60 * unit));
   const rest = (ticks - minutes * 60 * unit) / unit;
   const seconds = rest.toFixed(decimals).padStart(decimals > 0 ? decimals + 3 : 2, '0');

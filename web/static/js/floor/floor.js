@@ -74,7 +74,7 @@ export class Floor {
     this.#world = svg('g', { class: 'world' },
       this.#movers.routes, this.#trail.layer, this.#solids.layer, this.#movers.layer,
       this.#beams.layer, this.#robot.belief, this.#robot.layer, this.#beams.echoes);
-    surface.append(this.#ground.under, this.#world, this.#pins.marks, this.#pins.closest, this.#ground.over, this.#handles.layer);
+    surface.append(this.#ground.under, this.#pins.marks, this.#world, this.#pins.words, this.#pins.closest, this.#ground.over, this.#handles.layer);
     new ResizeObserver(() => this.#resized()).observe(surface);
     this.#listen();
   }

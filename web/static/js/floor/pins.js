@@ -27,7 +27,10 @@ export class Pins {
   #text = svg('text', { class: 'pin-text' }, this.#number, this.#when);
   #closest = svg('g', {}, this.#circle, this.#leader, this.#text);
 
-  marks = svg('g', { 'aria-hidden': 'true' }, this.#goalArea, this.#start, this.#startWord, this.#goal, this.#goalWord);
+  /** Under the robot. */
+  marks = svg('g', { 'aria-hidden': 'true' }, this.#goalArea, this.#start, this.#goal);
+  /** Over everything. */
+  words = svg('g', { 'aria-hidden': 'true' }, this.#startWord, this.#goalWord);
   closest = svg('g', { 'aria-hidden': 'true' }, this.#closest);
 
   constructor() {
@@ -70,6 +73,8 @@ export class Pins {
    * @param {number} up
    */
   #word(word, c, x, y, up) {
+    const inView = x > -20 && y > -20 && x < c.width + 20 && y < c.height + 20;
+    set(word, 'visibility', inView ? 'visible' : 'hidden');
     const above = y - up > WORD.height;
     set(word, 'x', px(Math.min(Math.max(x, WORD.half), Math.max(c.width - WORD.half, WORD.half))));
     set(word, 'y', px(above ? y - up : y + up + WORD.height * 0.7));
@@ -84,6 +89,7 @@ export class Pins {
    */
   wordAt(x, y) {
     const on = (/** @type {Element} */ word) =>
+      word.getAttribute('visibility') !== 'hidden' &&
       Math.abs(x - Number(word.getAttribute('x'))) < WORD.half && Math.abs(y + 5 - Number(word.getAttribute('y'))) < WORD.height / 2 + 2;
     return on(this.#startWord) ? 'start' : on(this.#goalWord) ? 'goal' : null;
   }
