@@ -48,9 +48,9 @@ func Default(n Numbers) *Logic {
 			{From: goal, To: avoid, When: []Condition{below(Nearest, n.Safe, 0)}, Meet: true},
 			{From: wall, To: avoid, When: []Condition{below(Nearest, n.Safe, 0)}},
 			{From: goal, To: wall, When: []Condition{below(Ahead, n.Notice, 0)}, Meet: true},
-			{From: wall, To: goal, MinTime: n.MinTime, Hold: 0.1, When: []Condition{
+			{From: wall, To: goal, Hold: 0.1, When: []Condition{atLeast(TimeSinceMeeting, n.MinTime),
 				{Reading: FreeWay, Rel: AtLeast, HasAgainst: true, Against: GoalDistance}, atLeast(Ahead, 1.05*n.Notice)}},
-			{From: wall, To: goal, MinTime: n.MinTime, Hold: 0.1, When: []Condition{
+			{From: wall, To: goal, Hold: 0.1, When: []Condition{atLeast(TimeSinceMeeting, n.MinTime),
 				atLeast(Gain, n.Gain), atLeast(Ahead, 1.05*n.Notice)}},
 			{From: wall, To: gaveUp, When: []Condition{atLeast(Closed, 1)}},
 			{From: avoid, To: wall, When: []Condition{atLeast(Nearest, n.Safe+n.Band)}},

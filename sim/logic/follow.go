@@ -43,24 +43,33 @@ func (e *Engine) alongWall(in *Input, into geom.Vec, side Side, standOff float64
 	for i := range s.points {
 		nearest = math.Min(nearest, s.points[i].rho)
 	}
-	w0 := math.Max(in.Hull, math.Min(in.Hull+e.l.Margin, nearest))
-	w1 := in.Hull + standOff
-	var first geom.Vec
+	w := math.Max(in.Hull, math.Min(in.Hull+e.l.Margin, nearest))
+	aim := math.Max(standOff, in.Hull/2)
+	var dir geom.Vec
 	ok := false
-	reach := 2 * w0
-	for try := 0; try < 4 && !ok; try++ {
-		first, ok = e.sweep(into, side, w0, reach)
-		if !ok {
-			reach /= 2
+	// Where a long strip leaves nothing but to turn back, a shorter one may still
+	// find the way round a tight bend.
+	for reach := 2 * w; reach > w/4; reach /= 2 {
+		first, free := e.sweep(into, side, w, reach)
+		if !free {
+			continue
+		}
+		d := e.standOff(into, first, e.middle(first, side, w, reach), side, in.Hull+standOff, aim)
+		back := e.turnsBack(d)
+		if !ok || !back {
+			dir, ok = d, true
+		}
+		if !back {
+			break
 		}
 	}
-	if !ok {
-		return geom.Vec{}, false
-	}
-	middle := e.middle(first, side, w0, reach)
-	// Stand-off: go on turning until the point a stand-off ahead is clear of the wall by it.
-	aim := math.Max(standOff, in.Hull/2)
-	return e.standOff(into, first, middle, side, w1, aim), true
+	return dir, ok
+}
+
+// turnsBack reports whether dir is more than 100° off the way the robot is going.
+func (e *Engine) turnsBack(dir geom.Vec) bool {
+	const back = -0.17364817766693033 // cosine of 100°
+	return dir.Dot(e.wall.travel) < back
 }
 
 // sweep turns a ray from the direction from, away from a wall on the given side

@@ -12,7 +12,7 @@ var (
 	readingNames   = [NumReadings]string{
 		"goal_distance_m", "goal_bearing_rad", "nearest_m", "ahead_m", "front_m", "left_m", "right_m",
 		"free_way_m", "best_distance_m", "gain_m", "alignment", "time_in_mode_s", "way_in_mode_m", "closed",
-		"meet_distance_m", "line_offset_m",
+		"meet_distance_m", "time_since_meeting_s", "line_offset_m",
 	}
 )
 

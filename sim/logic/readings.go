@@ -28,6 +28,7 @@ func (e *Engine) read(in *Input) {
 		r[Closed] = 1
 	}
 	r[MeetDistance] = t.metDistance
+	r[TimeSinceMeeting] = in.Time - t.metAt
 	line := in.Goal.Sub(t.origin).Unit()
 	r[LineOffset] = math.Abs(line.Cross(t.plan.Sub(t.origin)))
 }

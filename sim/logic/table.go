@@ -62,22 +62,23 @@ type Reading uint8
 // The readings. Gaps are measured from the hull, in metres, and are the sight
 // limit where nothing is in sight; all come from the ring and the estimate alone.
 const (
-	GoalDistance Reading = iota // believed distance of the plan point to the goal, m
-	GoalBearing                 // |angle| from the heading to the goal, rad
-	Nearest                     // smallest gap of all returns
-	Ahead                       // smallest gap of what stands in the hull's way straight to the goal
-	Front                       // smallest gap in the sector about the heading
-	Left                        // … about +90°
-	Right                       // … about −90°
-	FreeWay                     // F: how far the hull could go straight toward the goal, at most the goal distance
-	BestDistance                // d_min: best goal distance since the obstacle was met, m
-	Gain                        // d_min − (goal distance − F), m
-	Alignment                   // cosine between the way to the goal and the way out of the obstacles
-	TimeInMode                  // s
-	WayInMode                   // way driven in the mode by the estimate, m
-	Closed                      // 1 when the boundary has been followed back to where it was met, else 0
-	MeetDistance                // goal distance where the obstacle was met, m
-	LineOffset                  // distance from the straight line between where the goal was set out for and the goal, m
+	GoalDistance     Reading = iota // believed distance of the plan point to the goal, m
+	GoalBearing                     // |angle| from the heading to the goal, rad
+	Nearest                         // smallest gap of all returns
+	Ahead                           // smallest gap of what stands in the hull's way straight to the goal
+	Front                           // smallest gap in the sector about the heading
+	Left                            // … about +90°
+	Right                           // … about −90°
+	FreeWay                         // F: how far the hull could go straight toward the goal, at most the goal distance
+	BestDistance                    // d_min: best goal distance since the obstacle was met, m
+	Gain                            // d_min − (goal distance − F), m
+	Alignment                       // cosine between the way to the goal and the way out of the obstacles
+	TimeInMode                      // s
+	WayInMode                       // way driven in the mode by the estimate, m
+	Closed                          // 1 when the boundary has been followed back to where it was met, else 0
+	MeetDistance                    // goal distance where the obstacle was met, m
+	TimeSinceMeeting                // time since the obstacle was met, s
+	LineOffset                      // distance from the straight line between where the goal was set out for and the goal, m
 	NumReadings
 )
 

@@ -22,6 +22,7 @@ type track struct {
 
 	best        float64 // d_min
 	metDistance float64 // goal distance at the meeting
+	metAt       float64 // s
 	side        Side
 	met         bool    // an obstacle has been met on the way to this goal
 	parted      bool    // and left again
@@ -68,14 +69,14 @@ func (e *Engine) keepTrack(in *Input) {
 	}
 	t.best = math.Min(t.best, t.distance)
 	if besideWall(e.l.Modes[e.mode].Behaviour) {
-		t.loop.follow(pos, step, in.Hull)
+		t.loop.follow(pos, e.wall.at, step, in.Hull)
 	}
 }
 
 // startMeeting lets d_min and the meeting point start here.
 func (e *Engine) startMeeting() {
 	t := &e.track
-	t.best, t.metDistance = t.distance, t.distance
+	t.best, t.metDistance, t.metAt = t.distance, t.distance, t.time
 	t.loop = loop{from: t.pos}
 }
 
@@ -110,27 +111,35 @@ func (e *Engine) part(in *Input) {
 	e.track.parted, e.track.partedBest = true, e.track.best
 }
 
-// loop finds out whether a boundary has been followed back to where it was met.
-// It waits until the robot has settled on the boundary, remembers that place and
-// the way it drove there, and looks for coming back to it in the same direction.
-// Where the boundary runs back into itself later than that (the way in was a spur),
-// the first place is never met again; so a second one is set anew each time the
-// way followed has doubled (after Brent's method of finding cycles).
+// loop finds out whether a boundary has been followed back to where it has been
+// followed before. It remembers places along the way and the direction driven
+// there, and looks for coming back to one of them in the same direction with the
+// same piece of wall beside it (in a doorway the two jambs are passed in turn). The first
+// place is where the robot has settled on the boundary after the meeting. But the way
+// in may have been a spur that the boundary, followed round, never comes back to;
+// so further places are marked as the way grows, each time by half (as Brent's
+// method finds a cycle whose beginning is not known), and the oldest is given up for the new one.
 type loop struct {
 	way    float64 // followed since the meeting, m
 	from   geom.Vec
-	marks  [2]mark
-	again  float64 // way at which the second mark is set anew
+	marks  [6]mark
+	next   int
+	again  float64 // way at which the next mark is due
 	closed bool
 }
 
+// mark is a place on the way. left says that the robot has been well away from it.
 type mark struct {
 	set, left bool
 	at, dir   geom.Vec
+	wall      geom.Vec // the place on the wall beside it
 	way       float64
 }
 
-func (l *loop) follow(pos geom.Vec, step, hull float64) {
+// cramped is the way, in hull radii, after which a robot that never got away from a place counts as back at it.
+const cramped = 25
+
+func (l *loop) follow(pos, wall geom.Vec, step, hull float64) {
 	l.way += step
 	d := pos.Sub(l.from)
 	if d.Norm() < hull/4 {
@@ -143,21 +152,20 @@ func (l *loop) follow(pos geom.Vec, step, hull float64) {
 		if !m.set {
 			continue
 		}
+		since := l.way - m.way
 		off := pos.Sub(m.at).Norm()
-		near := hull + math.Min(0.01*(l.way-m.way), hull)
+		near := hull + math.Min(0.01*since, hull) // the estimate drifts
 		switch {
 		case off > 3*hull+near:
 			m.left = true
-		case m.left && off < near && dir.Dot(m.dir) > 0.5:
+		case m.left && off < near && dir.Dot(m.dir) > 0.5 && wall.Sub(m.wall).Norm() < near+hull,
+			!m.left && since > cramped*hull:
 			l.closed = true
 		}
 	}
-	if !l.marks[0].set && l.way >= 3*hull {
-		l.marks[0] = mark{set: true, at: pos, dir: dir, way: l.way}
-		l.again = 2 * l.way
-	}
-	if l.marks[0].set && l.way >= l.again {
-		l.marks[1] = mark{set: true, at: pos, dir: dir, way: l.way}
-		l.again = 2 * l.way
+	if l.way >= math.Max(l.again, 3*hull) {
+		l.marks[l.next] = mark{set: true, at: pos, dir: dir, wall: wall, way: l.way}
+		l.next = (l.next + 1) % len(l.marks)
+		l.again = 1.5 * l.way
 	}
 }
