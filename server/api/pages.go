@@ -110,7 +110,7 @@ func card(e scenarios.Entry) (page.Card, error) {
 	if err != nil {
 		return page.Card{}, fmt.Errorf("shipped scenario %s: %w", e.Slug, err)
 	}
-	f, err := watch.Finish(sc, nil)
+	f, err := watch.Finish(context.Background(), sc, nil)
 	if err != nil {
 		return page.Card{}, fmt.Errorf("shipped scenario %s: %w", e.Slug, err)
 	}

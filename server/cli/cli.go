@@ -55,6 +55,8 @@ func Execute(ctx context.Context, args []string, in io.Reader, out, errs io.Writ
 	var faulty *faultyInput
 	if errors.As(err, &faulty) {
 		io.WriteString(errs, faulty.report())
+	} else if errors.Is(err, context.Canceled) {
+		fmt.Fprintln(errs, "leeway: stopped before the end")
 	} else {
 		fmt.Fprintf(errs, "leeway: %v\n", err)
 	}

@@ -119,6 +119,16 @@ func TestEveryProblemOnALineOfItsOwn(t *testing.T) {
 	}
 }
 
+func TestRunCanBeStopped(t *testing.T) {
+	ctx, cancel := context.WithCancel(t.Context())
+	cancel()
+	var out, errs bytes.Buffer
+	code := Execute(ctx, []string{"run", "-"}, strings.NewReader(open), &out, &errs)
+	if code != 2 || out.Len() > 0 || !strings.Contains(errs.String(), "stopped") {
+		t.Errorf("%d %q %q", code, out.String(), errs.String())
+	}
+}
+
 func TestRunAsJSON(t *testing.T) {
 	code, out, _ := leeway(t, open, "run", "-", "--json", "--seed", "5")
 	var o map[string]any

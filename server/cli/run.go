@@ -46,6 +46,7 @@ the same on every machine), seed, name.
 	}
 	f := cmd.Flags()
 	f.Int64Var(&o.seed, "seed", 1, "seed of everything random, instead of the file's")
+	f.Lookup("seed").DefValue = "" // it is the file's
 	f.BoolVar(&o.json, "json", false, "print the outcome as JSON")
 	f.StringVar(&o.csv, "csv", "", "write a row for every control tick to this `file`")
 	f.StringVar(&o.svg, "svg", "", "draw the floor and the way into this `file`")
@@ -87,7 +88,7 @@ func run(cmd *cobra.Command, arg string, o *runOptions) error {
 			return file.Close()
 		}
 	}
-	f, err := watch.Finish(sc, each)
+	f, err := watch.Finish(cmd.Context(), sc, each)
 	if err != nil {
 		closeCSV()
 		return err

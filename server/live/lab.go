@@ -148,13 +148,17 @@ func looksLikeID(id string) bool {
 
 // begin starts the loop of a session.
 func (l *Lab) begin(ctx context.Context, sc *scenario.Scenario, kept store.Session) error {
-	s, err := newSession(l, sc, kept)
-	if err != nil {
-		return err
-	}
+	var s *Session
 	for {
 		if err := l.makeRoom(ctx); err != nil {
 			return err
+		}
+		if s == nil { // made only when there is room: a large floor takes its time
+			made, err := newSession(l, sc, kept)
+			if err != nil {
+				return err
+			}
+			s = made
 		}
 		l.mu.Lock()
 		switch {

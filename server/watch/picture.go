@@ -1,6 +1,7 @@
 package watch
 
 import (
+	"context"
 	"fmt"
 	"math"
 
@@ -19,9 +20,9 @@ type Finished struct {
 	Trail    Trail
 }
 
-// Finish runs a valid scenario to its end. each, when not nil, is called at tick
-// 0 and after every tick.
-func Finish(s *scenario.Scenario, each func(*sim.Run)) (*Finished, error) {
+// Finish runs a valid scenario to its end, or until ctx ends: then the error is
+// that of ctx. each, when not nil, is called at tick 0 and after every tick.
+func Finish(ctx context.Context, s *scenario.Scenario, each func(*sim.Run)) (*Finished, error) {
 	c, err := s.Config()
 	if err != nil {
 		return nil, err
@@ -31,7 +32,10 @@ func Finish(s *scenario.Scenario, each func(*sim.Run)) (*Finished, error) {
 		return nil, err
 	}
 	f := &Finished{Scenario: s, Run: r}
-	for {
+	for n := 0; ; n++ {
+		if n%1024 == 0 && ctx.Err() != nil {
+			return nil, ctx.Err()
+		}
 		f.Trail.Note(r)
 		if each != nil {
 			each(r)

@@ -1,6 +1,8 @@
 package watch
 
 import (
+	"context"
+	"errors"
 	"math"
 	"strings"
 	"testing"
@@ -80,7 +82,7 @@ func TestTrailHasASpotWhereTheModeChanged(t *testing.T) {
 func TestFinishIsTheRunAlone(t *testing.T) {
 	sc := parse(t, desk)
 	var first, last int64 = -1, -1
-	f, err := Finish(sc, func(r *sim.Run) {
+	f, err := Finish(t.Context(), sc, func(r *sim.Run) {
 		if first < 0 {
 			first = r.Tick()
 		}
@@ -106,7 +108,7 @@ func TestFinishIsTheRunAlone(t *testing.T) {
 }
 
 func TestPictureShowsTheFloorAsItEndsAndTheWholeWay(t *testing.T) {
-	f, err := Finish(parse(t, desk), nil)
+	f, err := Finish(t.Context(), parse(t, desk), nil)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -150,7 +152,7 @@ func TestShortIsWhatFallsShort(t *testing.T) {
 		`{"within_s": 60, "leeway_m": 0, "switches": 0}`:   true,
 		`{"within_s": 60, "leeway_m": 0, "switches": 100}`: false,
 	} {
-		f, err := Finish(parse(t, strings.Replace(desk, `"edits"`, `"asked": `+asked+`, "edits"`, 1)), nil)
+		f, err := Finish(t.Context(), parse(t, strings.Replace(desk, `"edits"`, `"asked": `+asked+`, "edits"`, 1)), nil)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -161,7 +163,7 @@ func TestShortIsWhatFallsShort(t *testing.T) {
 }
 
 func TestVerdictInWords(t *testing.T) {
-	f, err := Finish(parse(t, `{"leeway": 1, "floor": {"width_m": 5, "height_m": 4, "enclosed": false}, "asked": {"within_s": 2},
+	f, err := Finish(t.Context(), parse(t, `{"leeway": 1, "floor": {"width_m": 5, "height_m": 4, "enclosed": false}, "asked": {"within_s": 2},
 		"start": {"x_m": 1, "y_m": 2}, "goal": {"x_m": 4, "y_m": 2}}`), nil)
 	if err != nil {
 		t.Fatal(err)
@@ -189,6 +191,15 @@ func TestLookOfEveryMode(t *testing.T) {
 		if got := Look(&c.mode); got != c.want {
 			t.Errorf("%+v looks like %s", c.mode, got)
 		}
+	}
+}
+
+func TestFinishCanBeGivenUp(t *testing.T) {
+	ctx, cancel := context.WithCancel(t.Context())
+	ticks := 0
+	_, err := Finish(ctx, parse(t, desk), func(*sim.Run) { ticks++; cancel() })
+	if !errors.Is(err, context.Canceled) || ticks > 1024 {
+		t.Errorf("%v after %d ticks", err, ticks)
 	}
 }
 
