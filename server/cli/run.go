@@ -45,8 +45,7 @@ the same on every machine), seed, name.
 		},
 	}
 	f := cmd.Flags()
-	f.Int64Var(&o.seed, "seed", 1, "seed of everything random, instead of the file's")
-	f.Lookup("seed").DefValue = "" // it is the file's
+	f.Int64Var(&o.seed, "seed", 0, "seed of everything random, instead of the file's")
 	f.BoolVar(&o.json, "json", false, "print the outcome as JSON")
 	f.StringVar(&o.csv, "csv", "", "write a row for every control tick to this `file`")
 	f.StringVar(&o.svg, "svg", "", "draw the floor and the way into this `file`")
