@@ -36,7 +36,11 @@ func (e *Engine) read(in *Input) {
 // readWay looks along the strip that the hull, with the logic's margin on either
 // side, sweeps on its straight way to the goal. FreeWay is how far it gets before
 // it touches anything known; Ahead is the smallest gap among all that it would
-// touch before it is well inside the goal.
+// touch before it is well inside the goal. Beside a wall the strip is a margin
+// wider: a way that is only just free is not worth leaving the wall for.
+//
+// The two beams on either side of the way always count, even where they meet
+// something outside the strip: what stands there may reach into the strip between them.
 func (e *Engine) readWay(in *Input) {
 	s, t := &e.see, &e.track
 	w := in.Hull + e.l.Margin
@@ -45,20 +49,48 @@ func (e *Engine) readWay(in *Input) {
 	}
 	enough := math.Max(0, t.goalFarness-in.GoalRadius/2)
 	free, ahead := math.Inf(1), s.limit
+	meet := func(touch, rho float64) {
+		if touch < enough {
+			free = math.Min(free, touch)
+			ahead = math.Min(ahead, rho-in.Hull)
+		}
+	}
 	for i := range s.points {
 		p := &s.points[i]
-		touch, ok := touchAt(p.v, t.goalDir, w)
-		if !ok || touch >= enough {
-			continue
+		if touch, ok := touchAt(p.v, t.goalDir, w); ok {
+			meet(touch, p.rho)
 		}
-		free = math.Min(free, touch)
-		ahead = math.Min(ahead, p.rho-in.Hull)
+	}
+	for _, side := range [...]Side{LeftSide, RightSide} {
+		if rho, ok := e.beside(in, side); ok {
+			meet(math.Max(0, rho-w), rho)
+		}
 	}
 	if math.IsInf(free, 1) && s.limit < enough {
 		free = s.limit
 	}
 	e.readings[FreeWay] = math.Min(free, t.distance)
 	e.readings[Ahead] = ahead
+}
+
+// beside returns the distance from the hull's centre to what the beam next to the
+// way to the goal, on the given side of it, has met; ok is false when it has met nothing.
+func (e *Engine) beside(in *Input, side Side) (rho float64, ok bool) {
+	s := &e.see
+	way := e.track.goalDir.Rotate(-s.head.Y, s.head.X)
+	best := -2.0
+	for i := range s.beams {
+		b := &s.beams[i]
+		dir := in.Scan.Dir[i]
+		if b.tick < 0 || way.Cross(dir)*float64(side) < 0 {
+			continue
+		}
+		if c := way.Dot(dir); c > best {
+			best, ok = c, b.hit
+			rho = b.at.Sub(s.pos).Norm()
+		}
+	}
+	return rho, ok
 }
 
 // touchAt returns how far a disc of radius w, centred at the origin, moves along
