@@ -99,6 +99,11 @@ func TestBriefHasNoSpacesOfItsOwn(t *testing.T) {
 	if want := "at 0.45&thinsp;m/s, by dead reckoning."; plain != want {
 		t.Errorf("got %q, want %q", plain, want)
 	}
+	for _, together := range []string{`</span>,</span> by `, `dead reckoning</span>.</span>`} {
+		if !strings.Contains(got, together) {
+			t.Errorf("a line may break before punctuation: no %q in %q", together, got)
+		}
+	}
 }
 
 func TestWhereAProblemIs(t *testing.T) {

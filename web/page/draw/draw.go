@@ -68,6 +68,22 @@ type Leg struct {
 	Points []Point
 }
 
+// Pattern tells the ways of shadows apart.
+type Pattern uint8
+
+// The patterns.
+const (
+	Dotted Pattern = iota
+	Dashed
+)
+
+// Trace is the way of a shadow. It lies below the robot's, and has a small hull
+// where it ends.
+type Trace struct {
+	Pattern Pattern
+	Points  []Point
+}
+
 // Pin marks the closest place: the hull's centre, the place on the solid, and
 // what is written there.
 type Pin struct {
@@ -89,27 +105,28 @@ type Floor struct {
 	Goal     Point
 	Reach    float64 // radius of the goal, m
 	Hull     float64 // radius of the hull, m
+	Traces   []Trace
 	Way      []Leg
 	Pin      *Pin
 }
 
 // Paint is a set of colours, as SVG paint values.
 type Paint struct {
-	Ground, Frame, Grid, Solid, Mover, Text, Halo string
-	Goal, Wall, Avoid, Done, Fail, Other          string
+	Ground, Frame, Grid, Solid, Mover, Text, Soft, Halo string
+	Goal, Wall, Avoid, Done, Fail, Other                string
 }
 
 // Paper is for drawings inside a page: its custom properties, with fallbacks.
 var Paper = Paint{
 	Ground: "var(--floor,#fffef9)", Frame: "var(--ink,#1d2430)", Grid: "var(--grid,#ece8dc)",
-	Solid: "var(--solid,#2d3542)", Mover: "var(--mover,#5d6675)", Text: "var(--ink,#1d2430)", Halo: "var(--floor,#fffef9)",
+	Solid: "var(--solid,#2d3542)", Mover: "var(--mover,#5d6675)", Text: "var(--ink,#1d2430)", Soft: "var(--soft,#596370)", Halo: "var(--floor,#fffef9)",
 	Goal: "var(--goal-seeking,#2c5bd4)", Wall: "var(--wall-following,#b96d00)", Avoid: "var(--avoidance,#a5195c)",
 	Done: "var(--arrived,#17735a)", Fail: "var(--failure,#b3261e)", Other: "var(--other-mode,#5d6675)",
 }
 
 // Ink is for drawings that stand alone.
 var Ink = Paint{
-	Ground: "#fffef9", Frame: "#1d2430", Grid: "#ece8dc", Solid: "#2d3542", Mover: "#5d6675", Text: "#1d2430", Halo: "#fffef9",
+	Ground: "#fffef9", Frame: "#1d2430", Grid: "#ece8dc", Solid: "#2d3542", Mover: "#5d6675", Text: "#1d2430", Soft: "#596370", Halo: "#fffef9",
 	Goal: "#2c5bd4", Wall: "#b96d00", Avoid: "#a5195c", Done: "#17735a", Fail: "#b3261e", Other: "#5d6675",
 }
 
@@ -196,6 +213,7 @@ func (c *canvas) draw() {
 	c.routes()
 	c.solids()
 	c.movers()
+	c.traces()
 	c.way()
 	c.ends()
 	c.pin(w)

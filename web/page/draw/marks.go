@@ -141,6 +141,31 @@ func (c *canvas) way() {
 	c.s(`</g>`)
 }
 
+// traces draws the ways of the shadows.
+func (c *canvas) traces() {
+	if len(c.f.Traces) == 0 {
+		return
+	}
+	c.s(`<g fill="none"`)
+	c.paint("stroke", c.o.Paint.Soft)
+	c.s(` stroke-linejoin="round" stroke-linecap="round">`)
+	for _, t := range c.f.Traces {
+		if len(t.Points) == 0 {
+			continue
+		}
+		dash := ` stroke-width="2.2" stroke-dasharray="0 4.6"`
+		if t.Pattern == Dashed {
+			dash = ` stroke-width="1.7" stroke-dasharray="7 5"`
+		}
+		c.s(`<polyline`)
+		c.points(c.thin(t.Points))
+		c.s(dash + `/>`)
+		c.disc(t.Points[len(t.Points)-1], math.Max(c.f.Hull*c.scale, 3))
+		c.s(dash + `/>`)
+	}
+	c.s(`</g>`)
+}
+
 // thin leaves out the points that lie within a hair's breadth of the straight line
 // between those that stay (Ramer 1972; Douglas & Peucker 1973): a way has thousands.
 func (c *canvas) thin(ps []Point) []Point {

@@ -13,8 +13,9 @@
 
 /** @typedef {[number, number, number, number]} Bounds x0, y0, x1, y1 in metres */
 
-/** Pixels kept free round the floor when it is fitted into the view. */
+/** Pixels kept free round the floor when it is fitted into the view, and more below it, for the scale bar. */
 const MARGIN = 14;
+const BELOW = 14;
 /** The closest look: pixels a metre. */
 const CLOSEST = 2000;
 
@@ -27,7 +28,8 @@ const CLOSEST = 2000;
  */
 export function fit(bounds, width, height) {
   const [x0, y0, x1, y1] = bounds;
-  return { x: (x0 + x1) / 2, y: (y0 + y1) / 2, scale: fittedScale(bounds, width, height), width, height };
+  const scale = fittedScale(bounds, width, height);
+  return { x: (x0 + x1) / 2, y: (y0 + y1) / 2 - BELOW / 2 / scale, scale, width, height };
 }
 
 /**
@@ -37,7 +39,7 @@ export function fit(bounds, width, height) {
  */
 function fittedScale([x0, y0, x1, y1], width, height) {
   const across = Math.max(width - 2 * MARGIN, 1) / Math.max(x1 - x0, 1e-6);
-  const up = Math.max(height - 2 * MARGIN, 1) / Math.max(y1 - y0, 1e-6);
+  const up = Math.max(height - 2 * MARGIN - BELOW, 1) / Math.max(y1 - y0, 1e-6);
   return Math.min(across, up, CLOSEST);
 }
 

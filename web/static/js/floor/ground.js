@@ -52,7 +52,7 @@ export class Ground {
 
     const length = niceLength(c.scale, BAR);
     const px = length * c.scale;
-    const [x, y] = [14, c.height - 12];
+    const [x, y] = [14, c.height - 10];
     set(this.#bar, 'd', `M${x} ${y - 5}v5h${px}v-5`);
     set(this.#length, 'x', x + px + 8);
     set(this.#length, 'y', y + 1);

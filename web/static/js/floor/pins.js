@@ -20,6 +20,7 @@ export class Pins {
   #goalArea = svg('circle', { class: 'goal-area' });
   #goal = svg('g', { class: 'goal-mark' }, svg('circle', { class: 'goal-rim' }), svg('circle', { class: 'goal-dot', r: 4 }));
   #goalWord = svg('text', { class: 'word' });
+  #beliefWord = svg('text', { class: 'word belief' });
   #circle = svg('circle', { class: 'pin-hull' });
   #leader = svg('path', { class: 'pin-leader' });
   #number = svg('tspan', { class: 'pin-number' });
@@ -30,12 +31,13 @@ export class Pins {
   /** Under the robot. */
   marks = svg('g', { 'aria-hidden': 'true' }, this.#goalArea, this.#start, this.#goal);
   /** Over everything. */
-  words = svg('g', { 'aria-hidden': 'true' }, this.#startWord, this.#goalWord);
+  words = svg('g', { 'aria-hidden': 'true' }, this.#startWord, this.#goalWord, this.#beliefWord);
   closest = svg('g', { 'aria-hidden': 'true' }, this.#closest);
 
   constructor() {
     say(this.#startWord, 'start');
     say(this.#goalWord, 'goal');
+    say(this.#beliefWord, 'believes itself here');
   }
 
   /**
@@ -61,7 +63,24 @@ export class Pins {
     set(this.#goalArea, 'r', px(radius));
     this.#word(this.#goalWord, c, gx, gy, Math.max(WORD.up, radius + 7));
 
+    this.#believed(c, hello, frame);
     this.#pin(c, hello, frame);
+  }
+
+  /**
+   * Says what the ghost of the robot is, once it is clear of the robot.
+   * @param {Camera} c
+   * @param {Hello} hello
+   * @param {Frame} frame
+   */
+  #believed(c, hello, frame) {
+    const [x, y] = toScreen(c, frame.belief[0], frame.belief[1]);
+    const apart = Math.hypot(frame.belief[0] - frame.pose[0], frame.belief[1] - frame.pose[1]);
+    const clear = apart > 2 * hello.hull && apart * c.scale > 30;
+    set(this.#beliefWord, 'visibility', clear ? 'visible' : 'hidden');
+    if (!clear) return;
+    set(this.#beliefWord, 'x', px(x));
+    set(this.#beliefWord, 'y', px(y + hello.hull * c.scale + 16));
   }
 
   /**

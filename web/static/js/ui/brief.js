@@ -4,6 +4,7 @@
 // so that nothing moves.
 
 import * as entry from '../core/entry.js';
+import { glue } from '../core/glue.js';
 import { html, say, set } from '../dom.js';
 
 /** @typedef {import('../core/protocol.js').Part} Part */
@@ -75,21 +76,24 @@ export class Brief {
     if (form !== this.#form) {
       this.#form = form;
       this.#fields.clear();
-      const nodes = parts.map((p) => this.#node(p));
+      const nodes = glue(parts).map(({ part, tail }) => this.#node(part, tail));
       this.#root.replaceChildren(...nodes);
     }
     for (const p of parts) this.#fields.get(p.number ?? p.choice ?? '')?.show(p);
   }
 
-  /** @param {Part} p */
-  #node(p) {
+  /**
+   * @param {Part} p
+   * @param {string} tail punctuation right behind it
+   */
+  #node(p, tail) {
     if (p.number) {
-      const field = new NumberField(p, (v) => this.#changed.number(p.number ?? '', v));
+      const field = new NumberField(p, tail, (v) => this.#changed.number(p.number ?? '', v));
       this.#fields.set(p.number, field);
       return field.root;
     }
     if (p.choice) {
-      const field = new ChoiceField(p, (v) => this.#changed.choice(p.choice ?? '', v));
+      const field = new ChoiceField(p, tail, (v) => this.#changed.choice(p.choice ?? '', v));
       this.#fields.set(p.choice, field);
       return field.root;
     }
@@ -114,9 +118,10 @@ class NumberField {
 
   /**
    * @param {Part} part
+   * @param {string} tail
    * @param {(value: number) => boolean} send
    */
-  constructor(part, send) {
+  constructor(part, tail, send) {
     this.#part = part;
     this.#send = send;
     const note = `note-${++ids}`;
@@ -126,7 +131,8 @@ class NumberField {
     });
     this.#note = html('span', { class: 'note', id: note });
     const unit = part.unit ? [html('span', { class: 'unit', 'aria-hidden': 'true' }, `\u2009${part.unit}`)] : [];
-    this.root = html('span', { class: 'num' }, html('span', { class: 'entry' }, this.#input, ...unit), this.#note);
+    const box = html('span', { class: 'entry' }, this.#input, ...unit);
+    this.root = html('span', { class: 'num' }, box, tail, this.#note);
     this.#hint();
     this.#listen();
   }
@@ -349,16 +355,17 @@ class ChoiceField {
 
   /**
    * @param {Part} part
+   * @param {string} tail
    * @param {(value: string) => boolean} send
    */
-  constructor(part, send) {
+  constructor(part, tail, send) {
     this.#part = part;
     this.#send = send;
     const note = `note-${++ids}`;
     const options = (part.options ?? []).map((o) => html('option', { value: o.value }, o.label));
     this.#select = html('select', { 'aria-label': label(part), 'aria-describedby': note, 'data-path': part.choice ?? '' }, ...options);
     this.#note = html('span', { class: 'note', id: note });
-    this.root = html('span', { class: 'choice' }, this.#select, this.#note);
+    this.root = html('span', { class: 'choice' }, this.#select, tail, this.#note);
     this.#hint();
     this.#select.addEventListener('focus', () => keepInView(this.#note));
     this.#select.addEventListener('change', () => {
