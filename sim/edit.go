@@ -16,7 +16,7 @@ func (r *Run) Edit(e Edit) error {
 		return err
 	}
 	r.applyEdits()
-	for i := len(r.edits) - 1; i >= 0 && r.edits[i].Tick == e.Tick; i-- {
+	for i := r.due - 1; i >= 0 && r.edits[i].Tick == e.Tick; i-- {
 		if r.edits[i].sameThing(&e) {
 			r.edits = append(r.edits[:i], r.edits[i+1:]...)
 			r.due--

@@ -129,6 +129,29 @@ func TestEditsAreReplayed(t *testing.T) {
 	sameRun(t, h, hashes(t, newRun(t, c), 100_000))
 }
 
+// Edits that a file still has in store do not keep a second change at the same tick
+// from replacing the first.
+func TestEditsBeforeScriptedOnes(t *testing.T) {
+	c := realRobot()
+	c.Edits = []sim.Edit{{Tick: 900, Kind: sim.MoveGoal, Pos: geom.Vec{X: 10, Y: 4}}}
+	r := newRun(t, c)
+	for range 100 {
+		r.Step()
+	}
+	for i := range 5 {
+		if err := r.Edit(sim.Edit{Kind: sim.MoveSolid, Index: 1, Pos: geom.Vec{X: 6 + float64(i)/10, Y: 2.4}}); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if e := r.Edits(); len(e) != 2 || e[0].Pos.X != 6.4 || e[1].Tick != 900 {
+		t.Errorf("%+v", e)
+	}
+	c.Edits = r.Edits()
+	if a, b := r.Finish().Hash, newRun(t, c).Finish().Hash; a != b {
+		t.Error("the replay differs")
+	}
+}
+
 // A moved goal sets an arrived robot going again, and the replay knows.
 func TestAMovedGoalRevivesTheRun(t *testing.T) {
 	c := realRobot()
