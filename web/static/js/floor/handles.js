@@ -88,7 +88,8 @@ export class Handles {
       const t = h.things[h.chosen];
       const lit = t.key === held ? 'handle held' : t.key === hovered ? 'handle hover' : 'handle';
       set(h.group, 'class', lit);
-      if (all || t.what !== 'solid' || h === this.#focused || lit !== 'handle') this.#place(h, camera, places);
+      // Solids stand still but for those that a hand moves, here or elsewhere.
+      if (all || t.what !== 'solid' || places.moved.has(t.id) || h === this.#focused || lit !== 'handle') this.#place(h, camera, places);
     }
     if (this.#focused) this.#label();
   }

@@ -77,7 +77,11 @@ export class Brief {
       this.#form = form;
       this.#fields.clear();
       const nodes = glue(parts).map(({ part, tail }) => this.#node(part, tail));
+      const focused = document.activeElement;
+      const path = focused && this.#root.contains(focused) ? focused.getAttribute('data-path') : null;
       this.#root.replaceChildren(...nodes);
+      // A choice may change the sentence round it; whoever chose stays at it.
+      if (path) this.#fields.get(path)?.focus();
     }
     for (const p of parts) this.#fields.get(p.number ?? p.choice ?? '')?.show(p);
   }
@@ -141,6 +145,10 @@ class NumberField {
   get #range() {
     const { min = -Infinity, max = Infinity, step = 1, decimals = 0, unit = '' } = this.#part;
     return { min, max, step, decimals, unit };
+  }
+
+  focus() {
+    this.#input.focus();
   }
 
   /**
@@ -372,6 +380,10 @@ class ChoiceField {
       this.#hint();
       if (!this.#send(this.#select.value)) this.refuse('The connection is lost; the choice stays as it was.');
     });
+  }
+
+  focus() {
+    this.#select.focus();
   }
 
   #hint() {
