@@ -3,6 +3,7 @@ package cli
 import (
 	"bufio"
 	"bytes"
+	"context"
 	"encoding/json"
 	"fmt"
 	"io"
@@ -12,8 +13,10 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"leeway/server/report"
 	"leeway/server/watch"
 	"leeway/sim"
+	"leeway/sim/scenario"
 	"leeway/web/page/draw"
 )
 
@@ -26,14 +29,25 @@ func newRun() *cobra.Command {
 
 Exit status: 0 the robot arrived; 1 it did not; 2 bad input.
 
+Beside the robot run its shadows, the same design on simpler models: the point,
+which goes wherever it is told, and the unicycle, which must turn before it goes.
+What is printed says how each fares, where the robot parts from it, and what the
+numbers of the design allow. --no-shadows leaves them out.
+
 --json prints one object: status, reason, time_s, leeway_m (null when nothing solid
 was ever near), way_m, switches, contacts, estimate_error_m, saturated (share of the
 time that a wheel was at a limit), hash (of the whole run: the same scenario gives
-the same on every machine), seed, name.
+the same on every machine), seed, name, all of the robot. "models" holds robot, point
+and unicycle, each with status, reason, time_s, leeway_m, way_m, shortest_m (of the
+hull; null, with shortest_reason, where there is none), switches, contacts, hash, and
+for the shadows deviation_max_m, deviation_max_at_s and deviation_rms_m (between it and
+the robot at the same time), frechet_m (between their ways alone) and partings, a list of
+{t_s, kind, reason} with kind "decision" or "drift". "advice" lists {about, holds, text}.
 
 --csv writes a row for every control tick, with units in the column names.
 
---svg draws the floor with the way in the modes' colours and the closest place.`,
+--svg draws the floor with the way in the modes' colours and the closest place, and
+the ways of the shadows: the point's dotted, the unicycle's dashed.`,
 		Example: `  leeway run my-floor.json
   leeway run shipped:pocket --seed 7 --json
   leeway run shipped:pocket --csv way.csv --svg way.svg
@@ -48,6 +62,7 @@ the same on every machine), seed, name.
 	f.Int64Var(&o.seed, "seed", 0, "seed of everything random, instead of the file's")
 	f.BoolVar(&o.json, "json", false, "print the outcome as JSON")
 	f.StringVar(&o.csv, "csv", "", "write a row for every control tick to this `file`")
+	f.BoolVar(&o.alone, "no-shadows", false, "run the robot alone")
 	f.StringVar(&o.svg, "svg", "", "draw the floor and the way into this `file`")
 	return cmd
 }
@@ -57,6 +72,7 @@ type runOptions struct {
 	seeded   bool
 	json     bool
 	csv, svg string
+	alone    bool // without shadows
 }
 
 func run(cmd *cobra.Command, arg string, o *runOptions) error {
@@ -87,7 +103,7 @@ func run(cmd *cobra.Command, arg string, o *runOptions) error {
 			return file.Close()
 		}
 	}
-	f, err := watch.Finish(cmd.Context(), sc, each)
+	f, shadows, err := finish(cmd.Context(), sc, o.alone, each)
 	if err != nil {
 		closeCSV()
 		return err
@@ -97,7 +113,11 @@ func run(cmd *cobra.Command, arg string, o *runOptions) error {
 	}
 	if o.svg != "" {
 		var b bytes.Buffer
-		if err := draw.SVG(&b, f.Picture(), draw.Options{Longest: 1000, Paint: draw.Ink, Alone: true}); err != nil {
+		picture := f.Picture
+		if shadows != nil {
+			picture = shadows.Picture
+		}
+		if err := draw.SVG(&b, picture(), draw.Options{Longest: 1000, Paint: draw.Ink, Alone: true}); err != nil {
 			return err
 		}
 		if err := os.WriteFile(o.svg, b.Bytes(), 0o666); err != nil {
@@ -105,14 +125,27 @@ func run(cmd *cobra.Command, arg string, o *runOptions) error {
 		}
 	}
 	if o.json {
-		err = printJSON(cmd.OutOrStdout(), f)
-	} else {
-		err = printWords(cmd.OutOrStdout(), f)
+		err = printJSON(cmd.OutOrStdout(), f, shadows)
+	} else if err = printWords(cmd.OutOrStdout(), f); err == nil && shadows != nil {
+		printShadows(cmd.OutOrStdout(), shadows)
 	}
 	if err == nil && f.Run.Outcome().Status != sim.Arrived {
 		err = errNotArrived
 	}
 	return err
+}
+
+// finish runs a scenario to its end; shadows is nil when the robot runs alone.
+func finish(ctx context.Context, sc *scenario.Scenario, alone bool, each func(*sim.Run)) (f *watch.Finished, shadows *report.Finished, err error) {
+	if alone {
+		f, err = watch.Finish(ctx, sc, each)
+		return f, nil, err
+	}
+	shadows, err = report.Finish(ctx, sc, each)
+	if err != nil {
+		return nil, nil, err
+	}
+	return &shadows.Finished, shadows, nil
 }
 
 // outcome is what --json prints.
@@ -129,17 +162,20 @@ type outcome struct {
 	EstimateError float64  `json:"estimate_error_m"`
 	Saturated     float64  `json:"saturated"`
 	Hash          string   `json:"hash"`
+	Models        *models  `json:"models,omitempty"`
+	Advice        []advice `json:"advice,omitempty"`
 }
 
-func printJSON(w io.Writer, f *watch.Finished) error {
+func printJSON(w io.Writer, f *watch.Finished, shadows *report.Finished) error {
 	o := f.Run.Outcome()
 	out := outcome{
 		Name: f.Scenario.Name, Seed: f.Scenario.Seed, Status: o.Status.String(), Reason: o.Reason,
 		Time: o.Time, Way: o.Way, Switches: o.Switches, Contacts: o.Contacts,
 		EstimateError: o.EstimateError, Saturated: o.Saturated, Hash: fmt.Sprintf("%016x", o.Hash),
 	}
-	if !math.IsInf(o.Leeway, 0) {
-		out.Leeway = &o.Leeway
+	out.Leeway = finite(o.Leeway)
+	if shadows != nil {
+		out.Models, out.Advice = modelsOf(shadows), adviceOf(shadows)
 	}
 	b, err := json.MarshalIndent(out, "", "  ")
 	if err != nil {
