@@ -1,4 +1,4 @@
-// Dom: the few helpers that everything on the page is built with. Attributes and
+// Dom: the few functions that everything on the page is built with. Attributes and
 // texts are written only when they change, so that a redraw costs what changed.
 
 const SVG = 'http://www.w3.org/2000/svg';
