@@ -22,6 +22,7 @@ package e2e
 
 import (
 	"errors"
+	"flag"
 	"fmt"
 	"os"
 	"os/exec"
@@ -38,6 +39,7 @@ func TestMain(m *testing.M) {
 	if os.Getenv(asProgram) != "" {
 		os.Exit(cli.Main(os.Args[1:], os.Stdin, os.Stdout, os.Stderr))
 	}
+	flag.Parse()
 	path, err := chromium()
 	switch {
 	case err == nil:
@@ -46,7 +48,7 @@ func TestMain(m *testing.M) {
 		closeBrowser()
 		os.Exit(code)
 	case os.Getenv("CI") == "true":
-		tell("The browser tests cannot run: " + err.Error() + howToInstall)
+		fmt.Println("The browser tests cannot run: " + err.Error() + howToInstall)
 		os.Exit(1)
 	default:
 		tell("The browser tests did not run: " + err.Error() + howToInstall)
@@ -78,16 +80,20 @@ func chromium() (string, error) {
 
 // tell says something to whoever started the tests. Of a package that passes, the
 // go command shows nothing that it printed, so the words go to the error stream of
-// the go command as well, where the system lets us reach that.
+// the go command as well, where the system lets us reach that. Not into a file: the
+// go command would write over them.
 func tell(words string) {
 	fmt.Println(words)
 	if testing.Verbose() {
 		return
 	}
 	for _, name := range []string{fmt.Sprintf("/proc/%d/fd/2", os.Getppid()), "/dev/tty"} {
-		if f, err := os.OpenFile(name, os.O_WRONLY|os.O_APPEND, 0); err == nil {
-			fmt.Fprintln(f, words)
-			f.Close()
+		if info, err := os.Stat(name); err != nil || info.Mode().IsRegular() {
+			continue
+		}
+		if stream, err := os.OpenFile(name, os.O_WRONLY, 0); err == nil {
+			fmt.Fprintln(stream, words)
+			stream.Close()
 			return
 		}
 	}
