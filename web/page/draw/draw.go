@@ -68,12 +68,13 @@ type Leg struct {
 	Points []Point
 }
 
-// Pattern tells the ways of shadows apart.
+// Pattern tells the lines of models apart.
 type Pattern uint8
 
 // The patterns.
 const (
-	Dotted Pattern = iota
+	Plain Pattern = iota
+	Dotted
 	Dashed
 )
 
@@ -82,6 +83,12 @@ const (
 type Trace struct {
 	Pattern Pattern
 	Points  []Point
+}
+
+// Note is a letter or number in a small circle, which stands for words elsewhere.
+type Note struct {
+	At   Point
+	Text string
 }
 
 // Pin marks the closest place: the hull's centre, the place on the solid, and
@@ -107,6 +114,7 @@ type Floor struct {
 	Hull     float64 // radius of the hull, m
 	Traces   []Trace
 	Way      []Leg
+	Notes    []Note
 	Pin      *Pin
 }
 
@@ -216,6 +224,7 @@ func (c *canvas) draw() {
 	c.traces()
 	c.way()
 	c.ends()
+	c.notes()
 	c.pin(w)
 	if c.o.Alone {
 		c.scaleBar(h)

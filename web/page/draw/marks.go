@@ -239,6 +239,30 @@ func (c *canvas) ends() {
 	}
 }
 
+func (c *canvas) notes() {
+	for _, n := range c.f.Notes {
+		c.badge(c.x(n.At.X), c.y(n.At.Y), n.Text)
+	}
+}
+
+// badge writes a letter or two into a small circle.
+func (c *canvas) badge(x, y float64, text string) {
+	c.s(`<circle`)
+	c.attr("cx", x)
+	c.attr("cy", y)
+	c.s(` r="7.5"`)
+	c.paint("fill", c.o.Paint.Ground)
+	c.paint("stroke", c.o.Paint.Text)
+	c.s(` stroke-width="1.3"/><text`)
+	c.attr("x", x)
+	c.attr("y", y+3.6)
+	c.s(` text-anchor="middle" font-size="10.5" font-weight="700" font-family="` + faces + `"`)
+	c.paint("fill", c.o.Paint.Text)
+	c.s(`>`)
+	c.text(text)
+	c.s(`</text>`)
+}
+
 // pin marks the closest place by a dashed hull and a line to the number.
 func (c *canvas) pin(width float64) {
 	k := c.f.Pin
@@ -278,11 +302,13 @@ func (c *canvas) pin(width float64) {
 	c.label(x+dx*1.2, y+dy+4, anchor, paint, k.Text)
 }
 
+const faces = "Leeway Next, Atkinson Hyperlegible Next, Verdana, DejaVu Sans, sans-serif"
+
 func (c *canvas) label(x, y float64, anchor, paint, s string) {
 	c.s(`<text`)
 	c.attr("x", x)
 	c.attr("y", y)
-	c.s(` text-anchor="` + anchor + `" font-size="13" font-weight="600" font-family="Atkinson Hyperlegible Next, Verdana, DejaVu Sans, sans-serif"`)
+	c.s(` text-anchor="` + anchor + `" font-size="13" font-weight="600" font-family="` + faces + `"`)
 	c.paint("fill", paint)
 	c.paint("stroke", c.o.Paint.Halo)
 	c.s(` stroke-width="3" stroke-linejoin="round" paint-order="stroke">`)
