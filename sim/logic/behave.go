@@ -39,7 +39,7 @@ func cap0(u geom.Vec, top float64) geom.Vec {
 
 // headway is the time that lies between the robot and what it drives toward: the
 // speed is no more than the free way ahead divided by it, s.
-const headway = 0.5
+const headway = 1.0
 
 // creep is the least share of the speed at which a robot goes on where its way is free but short.
 const creep = 0.1

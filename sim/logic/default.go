@@ -16,7 +16,7 @@ type Numbers struct {
 
 // DefaultNumbers suit the hull radius, speed and goal radius given.
 func DefaultNumbers(hull, speed, goalRadius float64) Numbers {
-	return Numbers{Notice: 0.3, StandOff: 0.2, Safe: 0.08, Band: 0.04, Gain: 0.4, MinTime: 1, GoalRadius: goalRadius}
+	return Numbers{Notice: 0.3, StandOff: 0.2, Safe: 0.08, Band: 0.04, Gain: 0.35, MinTime: 1, GoalRadius: goalRadius}
 }
 
 // Default returns the default logic as data.

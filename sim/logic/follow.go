@@ -10,6 +10,7 @@ import (
 type wall struct {
 	at     geom.Vec // in the frame of the belief
 	known  bool
+	since  float64  // when it was last seen, s
 	travel geom.Vec // direction last taken along it; zero before the first
 }
 
@@ -238,33 +239,36 @@ func (e *Engine) holdWall(in *Input, m *Mode) bool {
 	w := in.Hull + e.l.Margin
 	last := e.wall.at.Sub(s.pos)
 	join := 4 * w * w
-	joined, any := math.Inf(1), math.Inf(1)
-	var near, other geom.Vec
+	var joined, any *point
 	for i := range s.points {
 		p := &s.points[i]
 		if !e.onSide(p.v, p.rho) {
 			continue
 		}
-		if p.rho < any {
-			any, other = p.rho, p.v
+		if any == nil || p.rho < any.rho {
+			any = p
 		}
-		if p.rho < joined && p.v.Sub(last).Norm2() <= join {
-			joined, near = p.rho, p.v
+		if (joined == nil || p.rho < joined.rho) && p.v.Sub(last).Norm2() <= join {
+			joined = p
 		}
 	}
 	far := in.Hull + m.StandOff + 1.5
 	switch {
-	case joined < far:
-		e.wall.at = s.pos.Add(near)
-	case e.onSide(last, last.Norm()) && last.Norm() < far:
+	case joined != nil && joined.rho < far:
+		e.take(joined)
+	case in.Time-e.wall.since <= keptTime && e.onSide(last, last.Norm()) && last.Norm() < far:
 		// Nothing is seen there now: go on about the place where the wall was.
-	case any < far:
-		e.wall.at = s.pos.Add(other)
+	case any != nil && any.rho < far:
+		e.take(any)
 	default:
-		e.wall.known = false
 		return e.findWall(in, m)
 	}
 	return true
+}
+
+// take makes p the followed place.
+func (e *Engine) take(p *point) {
+	e.wall.at, e.wall.since, e.wall.known = e.see.pos.Add(p.v), p.since, true
 }
 
 // moveAlong moves the followed place on to the nearest one that lies between it
@@ -272,20 +276,18 @@ func (e *Engine) holdWall(in *Input, m *Mode) bool {
 func (e *Engine) moveAlong(in *Input, into, dir geom.Vec, standOff float64) {
 	s, side := &e.see, e.track.side
 	limit := turn(into, dir, side)
-	best := math.Inf(1)
-	var at geom.Vec
+	var best *point
 	for i := range s.points {
 		p := &s.points[i]
-		if p.rho >= best || p.rho > 2*in.Hull+standOff {
+		if p.rho > 2*in.Hull+standOff || best != nil && p.rho >= best.rho {
 			continue
 		}
-		if !e.onSide(p.v, p.rho) || turn(into, p.v, side) > limit {
-			continue
+		if e.onSide(p.v, p.rho) && turn(into, p.v, side) <= limit {
+			best = p
 		}
-		best, at = p.rho, p.v
 	}
-	if !math.IsInf(best, 1) {
-		e.wall.at = s.pos.Add(at)
+	if best != nil {
+		e.take(best)
 	}
 }
 
@@ -304,26 +306,26 @@ func (e *Engine) findWall(in *Input, m *Mode) bool {
 	s, t := &e.see, &e.track
 	w := in.Hull + e.l.Margin
 	near := 2 * (in.Hull + m.StandOff)
-	best, touch := math.Inf(1), math.Inf(1)
-	var at, ahead geom.Vec
+	touch := math.Inf(1)
+	var nearest, ahead *point
 	for i := range s.points {
 		p := &s.points[i]
-		if p.rho < best {
-			best, at = p.rho, p.v
+		if nearest == nil || p.rho < nearest.rho {
+			nearest = p
 		}
 		if d, ok := touchAt(p.v, t.goalDir, w); ok && d < touch {
-			touch, ahead = d, p.v
+			touch, ahead = d, p
 		}
 	}
-	if touch < near {
-		at = ahead
-	} else if best > in.Hull+m.StandOff+1.5 {
-		return false
-	}
-	e.wall.at = s.pos.Add(at)
-	e.wall.known = true
+	e.wall.known = false
 	e.wall.travel = geom.Vec{}
-	return true
+	switch {
+	case touch < near:
+		e.take(ahead)
+	case nearest != nil && nearest.rho < in.Hull+m.StandOff+1.5:
+		e.take(nearest)
+	}
+	return e.wall.known
 }
 
 // chooseSide decides on which side mode m keeps the wall: as its rule says, or
@@ -343,10 +345,27 @@ func (e *Engine) chooseSide(in *Input, m *Mode) {
 		return
 	}
 	into := e.wall.at.Sub(e.see.pos).Unit()
-	left, okL := e.alongWall(in, into, LeftSide, m.StandOff)
-	right, okR := e.alongWall(in, into, RightSide, m.StandOff)
+	left, okL := e.wayOn(in, into, LeftSide)
+	right, okR := e.wayOn(in, into, RightSide)
 	const tie = 1e-9
 	if okR && (!okL || t.goalDir.Dot(right) > t.goalDir.Dot(left)+tie) {
 		t.side = RightSide
 	}
+}
+
+// foresight is how far, in hull radii, the ways along either side of a wall are
+// looked at before one is chosen. On random floors of mazes and rooms, eight gave
+// ways a fifth to a third shorter than two, and fourteen no better than eight.
+const foresight = 8
+
+// wayOn returns the direction of the first way past the wall, kept on the given
+// side, that is free for as far as it is looked at.
+func (e *Engine) wayOn(in *Input, into geom.Vec, side Side) (geom.Vec, bool) {
+	w := in.Hull + e.l.Margin
+	for reach := math.Min(foresight*in.Hull, e.track.goalFarness); reach > w/4; reach /= 2 {
+		if dir, ok := e.sweep(into, side, w, reach); ok {
+			return dir, true
+		}
+	}
+	return geom.Vec{}, false
 }

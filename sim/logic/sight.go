@@ -36,7 +36,6 @@ type beam struct {
 	tick int64
 	hit  bool
 	kept [keptPlaces]place
-	next int
 }
 
 // place is a place kept in memory since a time, s; full says that there is one.
@@ -48,14 +47,15 @@ type place struct {
 
 // point is a place on something solid.
 type point struct {
-	v   geom.Vec // from the hull's centre
-	rho float64  // |v|
+	v     geom.Vec // from the hull's centre
+	rho   float64  // |v|
+	since float64  // when it was last seen, s
 }
 
 const (
 	keptPlaces = 4    // of each beam
-	keptTime   = 2.5  // s that a place stays in memory
-	keptReach  = 1.5  // m from the robot, beyond which nothing is kept
+	keptTime   = 4.0  // s that a place stays in memory
+	keptReach  = 1.2  // m from the robot, beyond which nothing is kept
 	keptApart  = 0.12 // m between the kept places of one beam
 	wideGap    = 0.1  // rad between neighbouring beams, beyond which memory is used
 )
@@ -141,7 +141,7 @@ func (e *Engine) look(in *Input) {
 		if b.hit {
 			v := b.at.Sub(s.pos)
 			rho := v.Norm()
-			s.points = append(s.points, point{v, rho})
+			s.points = append(s.points, point{v, rho, in.Time})
 			gap = math.Min(gap, rho-in.Hull)
 			s.nearest = math.Min(s.nearest, gap)
 		}
@@ -157,13 +157,13 @@ func (e *Engine) look(in *Input) {
 	}
 	if s.sharp {
 		v := s.exact.Sub(s.pos)
-		p := point{v, v.Norm()}
+		p := point{v, v.Norm(), in.Time}
 		s.points = append(s.points, p)
 		s.nearest = math.Min(s.nearest, p.rho-in.Hull)
 	}
 	s.current = len(s.points)
 	if s.wide {
-		s.recall(in)
+		e.recall(in)
 	}
 }
 
@@ -176,24 +176,40 @@ func (s *sight) update(b *beam, in *Input, i int) {
 		b.at = s.pos.Add(scan.Dir[i].Rotate(s.head.Y, s.head.X).Scale(scan.Mount + scan.Range[i]))
 	}
 	if s.wide && looked {
-		b.keep(was, in.Time)
+		s.keep(b, was, in.Time)
 	}
 }
 
-// keep puts a place that the beam has looked at into its memory, unless it is
-// hardly apart from the last one there.
-func (b *beam) keep(at geom.Vec, time float64) {
-	last := &b.kept[(b.next+keptPlaces-1)%keptPlaces]
-	if last.full && last.at.Sub(at).Norm2() < keptApart*keptApart {
-		last.since = time
+// keep puts a place that the beam has looked at into its memory: not where it
+// has a place close by, and otherwise instead of the farthest, for near places matter most.
+func (s *sight) keep(b *beam, at geom.Vec, time float64) {
+	d := at.Sub(s.pos).Norm2()
+	if d > keptReach*keptReach {
 		return
 	}
-	b.kept[b.next] = place{at, time, true}
-	b.next = (b.next + 1) % keptPlaces
+	far, slot := d, -1
+	for i := range b.kept {
+		k := &b.kept[i]
+		if !k.full {
+			far, slot = math.Inf(1), i
+			continue
+		}
+		if k.at.Sub(at).Norm2() < keptApart*keptApart {
+			k.since = time
+			return
+		}
+		if r := k.at.Sub(s.pos).Norm2(); r > far {
+			far, slot = r, i
+		}
+	}
+	if slot >= 0 {
+		b.kept[slot] = place{at, time, true}
+	}
 }
 
-// recall adds the remembered places to what is seen.
-func (s *sight) recall(in *Input) {
+// recall adds the remembered places to what is seen, and the followed place on a wall.
+func (e *Engine) recall(in *Input) {
+	s := &e.see
 	for i := range s.beams {
 		kept := &s.beams[i].kept
 		for j := range kept {
@@ -207,8 +223,12 @@ func (s *sight) recall(in *Input) {
 				m.full = false
 				continue
 			}
-			s.points = append(s.points, point{v, math.Sqrt(r2)})
+			s.points = append(s.points, point{v, math.Sqrt(r2), m.since})
 		}
+	}
+	if e.wall.known && in.Time-e.wall.since <= keptTime {
+		v := e.wall.at.Sub(s.pos)
+		s.points = append(s.points, point{v, v.Norm(), e.wall.since})
 	}
 }
 
@@ -220,7 +240,7 @@ func (s *sight) measure(in *Input, half float64) {
 	for i := range s.beams {
 		s.beams[i] = beam{tick: -1}
 	}
-	if most := n*(keptPlaces+1) + 1; cap(s.points) < most {
+	if most := n*(keptPlaces+1) + 2; cap(s.points) < most {
 		s.points = make([]point, 0, most)
 	}
 	_, s.cosine = geom.Sincos(math.Min(half, math.Pi))
