@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"leeway/sim"
+	"leeway/sim/geom"
 	"leeway/sim/logic"
 )
 
@@ -27,12 +28,13 @@ const (
 	leastDwell = 0.5
 )
 
-// watch looks for partings of one shadow.
+// watch looks for partings of one shadow. The two kinds are watched apart: a robot
+// that only lags behind has drifted, and may still come to decide otherwise.
 type watch struct {
 	differs bool  // mode or side differ now
 	since   int64 // from this tick on
-	parted  bool  // a parting has been reported, and they have not come together since
-	drifted bool  // they are a hull radius apart
+	decided bool  // that has been reported
+	drifted bool  // they are a hull radius apart, and that has been reported
 }
 
 // look compares the two after a tick at which they were d apart, and reports a
@@ -46,21 +48,19 @@ func (w *watch) look(s *Set, who Who, d float64) (Parting, bool) {
 		w.since = s.tick
 	}
 	w.differs = differs
-
-	if !w.drifted && d > s.hull {
-		w.drifted = true
-		if !w.parted {
-			w.parted = true
-			return s.parting(who, s.tick, true, d), true
-		}
+	if !differs {
+		w.decided = false
 	}
-	dwell := max(leastDwell, slowestExit(robot), slowestExit(shadow))
-	if !w.parted && differs && float64(s.tick-w.since)*s.dt > dwell {
-		w.parted = true
+	if d < s.hull/2 {
+		w.drifted = false
+	}
+	if dwell := max(leastDwell, slowestExit(robot), slowestExit(shadow)); differs && !w.decided && float64(s.tick-w.since)*s.dt > dwell {
+		w.decided = true
 		return s.parting(who, w.since, false, d), true
 	}
-	if !differs && d < s.hull/2 {
-		w.parted, w.drifted = false, false
+	if d > s.hull && !w.drifted {
+		w.drifted = true
+		return s.parting(who, s.tick, true, d), true
 	}
 	return Parting{}, false
 }
@@ -80,43 +80,85 @@ func slowestExit(r *sim.Run) float64 {
 // parting describes how the two separated at the given tick.
 func (s *Set) parting(who Who, tick int64, drifted bool, d float64) Parting {
 	p := Parting{Shadow: who, Tick: tick, Time: float64(tick) * s.dt, Drifted: drifted}
-	robot, shadow := s.did(Robot), s.did(who)
+	what := s.did(Robot) + "; " + s.did(who)
+	if a, b := s.runs[Robot].Engine(), s.runs[who].Engine(); a.Mode() == b.Mode() && a.Side() == b.Side() {
+		what = "both were in " + s.mode(who)
+	}
 	if drifted {
-		p.Text = fmt.Sprintf("At %s the robot had come %.2f m from the %s, more than the hull's radius: %s; %s.",
-			Clock(p.Time), d, who, robot, shadow)
+		p.Text = fmt.Sprintf("At %s the robot had come %.2f m from the %s, more than the hull's radius: %s; %s.", Clock(p.Time), d, who, s.lies(who), what)
 	} else {
-		p.Text = fmt.Sprintf("At %s they decided differently: %s; %s.", Clock(p.Time), robot, shadow)
+		p.Text = fmt.Sprintf("From %s on they decided differently: %s.", Clock(p.Time), what)
 	}
 	return p
 }
 
-// did says what a model last decided, when, and what it had read: "the robot had
-// turned to wall-following with the wall on the left at 0:19.2, because something
-// stood 0.31 m away on the way to the goal, nearer than 0.35 m".
-func (s *Set) did(w Who) string {
+// lies says where the robot is, seen along the shadow's way: "it was 0.20 m behind and 0.05 m to the left".
+func (s *Set) lies(who Who) string {
+	shadow := s.runs[who]
+	along := shadow.Wanted().Unit() // a shadow knows its pose, so its frame is the world's
+	off := s.runs[Robot].Pose().Pos.Sub(shadow.Pose().Pos)
+	x, y := off.Dot(along), along.Cross(off)
+	if along == (geom.Vec{}) {
+		return fmt.Sprintf("the %s was standing", who)
+	}
+	lengthwise, aside := "ahead", "to the left"
+	if x < 0 {
+		lengthwise = "behind"
+	}
+	if y < 0 {
+		aside = "to the right"
+	}
+	return fmt.Sprintf("it was %.2f m %s and %.2f m %s of it", math.Abs(x), lengthwise, math.Abs(y), aside)
+}
+
+// mode names the mode that a model is in, with its side.
+func (s *Set) mode(w Who) string {
 	r := s.runs[w]
-	mode := r.Config().Logic.Modes[r.Engine().Mode()].Name
+	name := r.Config().Logic.Modes[r.Engine().Mode()].Name
 	switch r.Engine().Side() {
 	case logic.LeftSide:
-		mode += " with the wall on the left"
+		name += " with the wall on the left"
 	case logic.RightSide:
-		mode += " with the wall on the right"
+		name += " with the wall on the right"
 	}
+	return name
+}
+
+// did says what a model last decided, when, and what it had read: "the robot was in wall-following with the wall on
+// the left since 0:19.2, because something stood 0.31 m away on the way to the goal, nearer than 0.35 m".
+func (s *Set) did(w Who) string {
+	r := s.runs[w]
 	sw, ok := r.Engine().LastSwitch()
 	if !ok {
-		return fmt.Sprintf("the %s was still in %s", w, mode)
+		return fmt.Sprintf("the %s was still in %s", w, s.mode(w))
 	}
 	why := r.Config().Logic.Why(sw)
 	why = strings.TrimSuffix(strings.ToLower(why[:1])+why[1:], ".")
-	return fmt.Sprintf("the %s was in %s since %s, because %s", w, mode, Clock(sw.Time), why)
+	return fmt.Sprintf("the %s was in %s since %s, because %s", w, s.mode(w), Clock(sw.Time), why)
 }
 
-// Partings returns the places where the shadow and the robot separated, in order.
+// Partings returns the places where the shadow and the robot separated, in the order
+// in which they were noticed: a different decision is one only when it has lasted.
 func (s *Set) Partings(w Who) []Parting {
 	if int(w) >= len(s.apart) {
 		return nil
 	}
 	return s.apart[w].partings
+}
+
+// First returns the parting that tells most: the first different decision, or, where
+// there is none, the first time they drifted apart.
+func (s *Set) First(w Who) (p Parting, ok bool) {
+	all := s.Partings(w)
+	for _, p := range all {
+		if !p.Drifted {
+			return p, true
+		}
+	}
+	if len(all) > 0 {
+		return all[0], true
+	}
+	return Parting{}, false
 }
 
 // Clock writes a time of a run as minutes and seconds: 0:19.2.

@@ -221,19 +221,29 @@ func TestPartings(t *testing.T) {
 	if len(p) == 0 {
 		t.Fatal("five short beams and never a parting")
 	}
-	last := -1.0
+	last := map[bool]float64{true: -1, false: -1}
 	for _, x := range p {
-		if x.Time <= last || x.Shadow != shadow.Point {
+		if x.Time <= last[x.Drifted] || x.Shadow != shadow.Point {
 			t.Errorf("out of order: %+v", x)
 		}
-		last = x.Time
-		for _, word := range []string{"robot", "point", shadow.Clock(x.Time)} {
+		last[x.Drifted] = x.Time
+		words := []string{shadow.Clock(x.Time), "differently"}
+		if x.Drifted {
+			words = []string{shadow.Clock(x.Time), "robot", "point", "of it"}
+		}
+		for _, word := range words {
 			if !strings.Contains(x.Text, word) {
 				t.Errorf("%q does not say %q", x.Text, word)
 			}
 		}
 	}
-	t.Logf("%d partings, the first: %s", len(p), p[0].Text)
+	first, ok := s.First(shadow.Point)
+	if !ok || first.Drifted {
+		t.Errorf("the first parting that tells most: %+v", first)
+	}
+	for _, x := range p {
+		t.Log(x.Text)
+	}
 }
 
 // Edits fall at the same time for all, also for those that have already ended.
