@@ -5,7 +5,6 @@ import (
 
 	"leeway/server/watch"
 	"leeway/sim"
-	"leeway/sim/drive"
 	"leeway/sim/floor"
 	"leeway/sim/geom"
 	"leeway/sim/scenario"
@@ -96,7 +95,7 @@ func Finish(ctx context.Context, sc *scenario.Scenario, each func(*sim.Run)) (*F
 		mo := Model{
 			Who: w, Outcome: run.Outcome(),
 			Deviation: set.Deviation(w), Partings: set.Partings(w),
-			Limits:  rc.Drive.Model == drive.TwoWheels && (rc.Drive.MaxWheelSpeed > 0 || rc.Drive.MaxWheelAccel > 0),
+			Limits:  limited(rc),
 			Reckons: rc.Drive.DeadReckoning,
 		}
 		mo.Shortest, mo.NoShortest = shortest.of(rc, starts[w])

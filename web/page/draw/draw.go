@@ -161,8 +161,10 @@ type Options struct {
 	// in pixels at which the drawing is shown. 0 means 800.
 	Longest float64
 	Paint   Paint
-	// Alone adds what a file of its own needs: the XML namespace, a size, the
-	// words start and goal, and a scale bar.
+	// Words adds the words start and goal.
+	Words bool
+	// Alone adds what a file of its own needs: the XML namespace, a size, Words, and
+	// a scale bar.
 	Alone bool
 }
 
@@ -173,6 +175,7 @@ func SVG(w io.Writer, f *Floor, o Options) error {
 	if o.Longest <= 0 {
 		o.Longest = 800
 	}
+	o.Words = o.Words || o.Alone
 	c := &canvas{f: f, o: o, out: make([]byte, 0, 8<<10)}
 	c.draw()
 	_, err := w.Write(c.out)

@@ -2,6 +2,10 @@ package draw
 
 import "math"
 
+// CoarseFrom is the scale, in drawing units a metre, below which the grid has a line
+// every ten metres only.
+const CoarseFrom = 24
+
 // ground draws the floor itself and a line every metre, or every ten on a large
 // floor.
 func (c *canvas) ground(width, height float64) {
@@ -16,7 +20,7 @@ func (c *canvas) ground(width, height float64) {
 	c.s(` stroke-width="1"/>`)
 
 	step := 1.0
-	for step*c.scale < 24 {
+	for step*c.scale < CoarseFrom {
 		step *= 10
 	}
 	c.s(`<path d="`)
@@ -233,15 +237,27 @@ func (c *canvas) ends() {
 	c.disc(f.Goal, math.Max(g/3, 2))
 	c.paint("fill", p.Done)
 	c.s(`/>`)
-	if c.o.Alone {
+	if c.o.Words {
 		c.label(x, y-r-5, "middle", p.Text, "start")
 		c.label(c.x(f.Goal.X), c.y(f.Goal.Y)-g-5, "middle", p.Text, "goal")
 	}
 }
 
+// badgeWide is the least distance of two badges, in drawing units.
+const badgeWide = 17.0
+
+// notes draws badges, one beside the other where they would cover each other.
 func (c *canvas) notes() {
+	var taken []Point
 	for _, n := range c.f.Notes {
-		c.badge(c.x(n.At.X), c.y(n.At.Y), n.Text)
+		at := Point{c.x(n.At.X), c.y(n.At.Y)}
+		for i := 0; i < len(taken); i++ {
+			if math.Hypot(at.X-taken[i].X, at.Y-taken[i].Y) < badgeWide-0.5 {
+				at.X, i = taken[i].X+badgeWide, -1
+			}
+		}
+		taken = append(taken, at)
+		c.badge(at.X, at.Y, n.Text)
 	}
 }
 
@@ -319,7 +335,7 @@ func (c *canvas) label(x, y float64, anchor, paint, s string) {
 // scaleBar draws one metre, or ten on a large floor.
 func (c *canvas) scaleBar(height float64) {
 	length, words := 1.0, "1 m"
-	if c.scale < 24 {
+	if c.scale < CoarseFrom {
 		length, words = 10, "10 m"
 	}
 	x, y, l := margin+14.0, height-margin-14, length*c.scale

@@ -49,7 +49,7 @@ type Mark struct {
 // The layout of a tape, in drawing units.
 const (
 	tapeLeft  = 78.0  // room for the names
-	tapeRight = 104.0 // room for the endings
+	tapeRight = 118.0 // room for the endings
 	tapeMarks = 20.0  // the row of marks
 	laneHigh  = 18.0
 	laneStep  = 23.0
@@ -164,7 +164,7 @@ func (c *tapeCanvas) gaps(y float64) {
 	c.s(` opacity="0.1"/>`)
 	c.line(tapeLeft, y+gapHigh, tapeLeft+c.wide, y+gapHigh, p.Soft, ` stroke-width="1"`)
 	c.line(tapeLeft, high(c.t.Asked), tapeLeft+c.wide, high(c.t.Asked), p.Fail, ` stroke-width="1" stroke-dasharray="4 3"`)
-	c.words(tapeLeft+c.wide+5, high(c.t.Asked)+4, "start", p.Fail, 600, fmt.Sprintf("%.2f asked", c.t.Asked))
+	c.words(tapeLeft+c.wide+5, math.Min(high(c.t.Asked)+4, y+gapHigh-1), "start", p.Fail, 600, fmt.Sprintf("%.2f asked", c.t.Asked))
 	c.words(tapeLeft-6, y+9, "end", p.Soft, 400, fmt.Sprintf("%.1f", top))
 	c.s(`<g fill="none" stroke-linejoin="round" stroke-linecap="round">`)
 	for _, k := range c.t.Gaps {
@@ -223,11 +223,13 @@ func (c *tapeCanvas) axis(y float64) {
 }
 
 func (c *tapeCanvas) marks(bottom float64) {
+	free := 0.0 // from here on no badge stands
 	for _, m := range c.t.Marks {
 		x := c.at(m.At)
 		if m.Text != "" {
 			c.line(x, 14, x, bottom, c.o.Paint.Text, ` stroke-width="1" stroke-dasharray="1 2.5"`)
-			c.badge(x, 9, m.Text)
+			c.badge(math.Max(x, free), 9, m.Text)
+			free = math.Max(x, free) + badgeWide
 			continue
 		}
 		c.s(`<path d="M`)
