@@ -59,7 +59,7 @@ It opens on any Leeway: with --base say whose. Nothing is uploaded anywhere.`,
 			if err != nil {
 				return err
 			}
-			link := strings.TrimSuffix(base, "/") + "/open#" + sc.Encode()
+			link := trimmed(base) + "/open#" + sc.Encode()
 			fmt.Fprintln(cmd.OutOrStdout(), link)
 			if len(link) > scenario.LongLink {
 				fmt.Fprintf(cmd.ErrOrStderr(), "leeway: the link has %d characters; many chat tools cut links off after %d: send the file instead\n",
@@ -71,6 +71,9 @@ It opens on any Leeway: with --base say whose. Nothing is uploaded anywhere.`,
 	cmd.Flags().StringVar(&base, "base", "http://"+app.DefaultAddr, "address of the Leeway that the link should open on")
 	return cmd
 }
+
+// trimmed is an address without the slash that a path begins with.
+func trimmed(base string) string { return strings.TrimSuffix(base, "/") }
 
 func newOpen() *cobra.Command {
 	return &cobra.Command{

@@ -112,6 +112,14 @@ func newVersion() *cobra.Command {
 	}
 }
 
+// version is the version of this program, in one word.
+func version() string {
+	if b, ok := debug.ReadBuildInfo(); ok {
+		return b.Main.Version
+	}
+	return "unknown"
+}
+
 func versionLine() string {
 	version, revision, changed := "unknown", "", ""
 	if b, ok := debug.ReadBuildInfo(); ok {
