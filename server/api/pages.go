@@ -8,14 +8,13 @@ import (
 	"fmt"
 	"io"
 	"net/http"
-	"strconv"
 	"sync"
 
 	"github.com/a-h/templ"
 	"github.com/go-chi/chi/v5"
 
 	"leeway/scenarios"
-	"leeway/server/live"
+	"leeway/server/brief"
 	"leeway/server/watch"
 	"leeway/sim/scenario"
 	"leeway/web/page"
@@ -64,26 +63,16 @@ func (s *server) bench(w http.ResponseWriter, r *http.Request) {
 }
 
 // briefView writes the brief as it stands, for the page before its script runs.
-func briefView(parts []live.Part) []page.Part {
-	var out []page.Part
-	for _, p := range parts {
-		switch v := p.Value.(type) {
-		case float64:
-			decimals := -1
-			if p.Decimals != nil {
-				decimals = *p.Decimals
-			}
-			out = append(out, page.Part{Number: strconv.FormatFloat(v, 'f', decimals, 64), Unit: p.Unit})
-		case string:
-			label := v
-			for _, o := range p.Options {
-				if o.Value == v {
-					label = o.Label
-				}
-			}
-			out = append(out, page.Part{Choice: label})
+func briefView(parts []brief.Part) []page.Part {
+	out := make([]page.Part, len(parts))
+	for i, p := range parts {
+		switch {
+		case p.Number != "":
+			out[i] = page.Part{Number: p.Shown(), Unit: p.Unit}
+		case p.Choice != "":
+			out[i] = page.Part{Choice: p.Shown()}
 		default:
-			out = append(out, page.Part{Text: p.Text})
+			out[i] = page.Part{Text: p.Text}
 		}
 	}
 	return out

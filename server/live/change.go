@@ -1,7 +1,6 @@
 package live
 
 import (
-	"context"
 	"errors"
 	"fmt"
 	"strings"
@@ -10,6 +9,7 @@ import (
 	"leeway/sim"
 	"leeway/sim/geom"
 	"leeway/sim/scenario"
+	"leeway/sim/shadow"
 )
 
 const fullOfEdits = "this run holds as many changes as a file may; restart it, and they become part of the floor"
@@ -17,6 +17,11 @@ const fullOfEdits = "this run holds as many changes as a file may; restart it, a
 // receive does what a viewer wants.
 func (s *Session) receive(v *viewer, m *message) {
 	now := time.Now()
+	if m.Kind == "seek" {
+		s.seek(*m.Tick)
+		return
+	}
+	s.goWhereSought()
 	if s.speed > 0 {
 		s.advance(now) // the change is made in the run where it was made on the clock
 	}
@@ -27,9 +32,19 @@ func (s *Session) receive(v *viewer, m *message) {
 		s.pause()
 	case "tick":
 		s.pause()
-		if !s.step() {
+		if !s.tape.AtHead() {
+			s.lookAt(s.tick() + 1)
+		} else if !s.step() {
 			v.putNote(notice("the run has ended; restart it to see it again"))
 		}
+	case "back":
+		s.pause()
+		if s.tick() == 0 {
+			v.putNote(notice("this is where the run starts"))
+		}
+		s.lookAt(s.tick() - 1)
+	case "shadows":
+		s.setShadows(v, *m.On)
 	case "restart":
 		s.restart(v)
 	case "speed":
@@ -50,7 +65,7 @@ func (s *Session) play(now time.Time) {
 	if s.playing {
 		return
 	}
-	if !s.run.Going() {
+	if s.tape.Done() {
 		if err := s.begin(s.again()); err != nil {
 			s.lab.opt.Log.Error("a run cannot start again", "session", s.id, "error", err)
 			return
@@ -68,6 +83,35 @@ func (s *Session) pause() {
 	s.playing, s.resume = false, false
 	s.changed = true
 	s.saveBy(time.Now())
+}
+
+// seek has the tape looked at elsewhere, as soon as it is time for a frame: of
+// what a hand that draws along the tape asks for, only the newest is worked out.
+func (s *Session) seek(tick int64) {
+	s.playing, s.resume = false, false
+	s.sought = min(max(tick, 0), s.tape.Length())
+	s.changed = true
+	s.saveBy(time.Now().Add(saveSoon))
+}
+
+// seekOn goes where somebody wants to look when it is time for a frame, or nobody
+// waits for one.
+func (s *Session) seekOn(now time.Time) {
+	if len(s.viewers) == 0 || !now.Before(s.nextFrame) {
+		s.goWhereSought()
+	}
+}
+
+// goWhereSought looks at the tape where it was last sought.
+func (s *Session) goWhereSought() {
+	if s.sought < 0 {
+		return
+	}
+	s.lookAt(s.sought)
+	s.sought = -1
+	for _, g := range s.grips {
+		g.last = longAgo
+	}
 }
 
 // The speeds: times real time.
@@ -100,25 +144,33 @@ func (s *Session) again() *scenario.Scenario {
 	return s.standing()
 }
 
-// standing returns the scenario as it stands now: what has been changed so far is
-// part of it, and what the file still has in store remains to come. A robot
+// standing returns the scenario as it stands where the tape is looked at: what has
+// been changed so far is part of it, and what the file still has in store remains to
+// come. In the past, what came later is left out: another run begins there. A robot
 // that was carried starts from the start again.
 func (s *Session) standing() *scenario.Scenario {
-	all := s.run.Edits()
-	past := len(all)
-	for past > 0 && all[past-1].Tick > s.run.Tick() {
-		past--
-	}
+	all := s.robot().Edits()
+	past := s.editsSoFar()
 	sc := s.sc.WithEdits(all[:past]).Folded()
-	if past < len(all) {
+	if past < len(all) && s.tape.AtHead() {
 		sc.Edits = s.sc.WithEdits(all[past:]).Edits
 	}
 	return sc
 }
 
-// withEdits returns the scenario as the run began, with all its edits: with it,
-// the run is the same again.
-func (s *Session) withEdits() *scenario.Scenario { return s.sc.WithEdits(s.run.Edits()) }
+// editsSoFar returns how many edits there are up to where the tape is looked at.
+func (s *Session) editsSoFar() int {
+	all := s.robot().Edits()
+	n := len(all)
+	for n > 0 && all[n-1].Tick > s.tick() {
+		n--
+	}
+	return n
+}
+
+// withEdits returns the scenario as the run began, with all edits of the tape: with
+// it, the run is the same again.
+func (s *Session) withEdits() *scenario.Scenario { return s.sc.WithEdits(s.robot().Edits()) }
 
 // canonical returns the text of withEdits.
 func (s *Session) canonical() []byte {
@@ -128,24 +180,39 @@ func (s *Session) canonical() []byte {
 	return s.text
 }
 
-// edit enters a change into the run.
+// fullOfEdits reports whether the tape can take no further edit. One in the past
+// has those after it forgotten.
+func (s *Session) fullOfEdits() bool {
+	n := len(s.robot().Edits())
+	if !s.tape.AtHead() {
+		n = s.editsSoFar()
+	}
+	return n >= scenario.MaxEdits
+}
+
+// edit enters a change into the run, where the tape is looked at.
 func (s *Session) edit(e sim.Edit) error {
-	if len(s.run.Edits()) >= scenario.MaxEdits {
+	if s.fullOfEdits() {
 		return errors.New(fullOfEdits)
 	}
-	if err := s.run.Edit(e); err != nil {
+	cut, err := s.tape.Edit(e)
+	if err != nil {
 		return err
 	}
-	switch e.Kind {
-	case sim.MoveSolid:
-		s.moved[e.Index] = true
-	case sim.MoveRobot:
-		s.trail.Note(s.run)
+	if cut {
+		s.note(notice(fmt.Sprintf("changed at %s: what had come after is another future now", shadow.Clock(float64(s.tick())*s.dt))))
+		s.anew = true
+	}
+	if cut || e.Kind == sim.MoveSolid {
+		s.noteMoved()
 	}
 	s.edited()
-	if s.resume && s.run.Going() {
+	if s.resume && !s.tape.Done() {
 		s.playing, s.resume = true, false
 		s.setClock(time.Now())
+	}
+	if s.making != nil {
+		return s.remake(s.source(), s.making.shadows)
 	}
 	return nil
 }
@@ -222,19 +289,23 @@ func (s *Session) setNumber(v *viewer, path string, x float64) {
 }
 
 // ask changes what is asked. That changes nothing about the run but when it ends:
-// it is run anew with its edits up to where it was.
+// it is run anew with its edits, as far as it had been.
 func (s *Session) ask(v *viewer, path string, set func(*scenario.Scenario) error) {
-	sc := s.withEdits()
+	sc, shadows := s.source(), s.shadows
+	if s.making != nil {
+		shadows = s.making.shadows
+	}
 	if err := set(sc); err != nil {
 		s.refuse(v, path, err)
 		return
 	}
-	tick := s.run.Tick()
-	if !s.beginOr(v, path, sc) {
+	if problems := sc.Validate(); len(problems) > 0 {
+		s.refuse(v, path, problems)
 		return
 	}
-	s.stepTo(context.Background(), tick)
-	s.setClock(time.Now())
+	if err := s.remake(sc, shadows); err != nil {
+		s.refuse(v, path, err)
+	}
 }
 
 // change makes a change that no running robot can take: the run begins again, on

@@ -131,7 +131,7 @@ func TestWhatIsAskedChangesNothingButTheEnd(t *testing.T) {
 			t.Errorf("was %+v, is %+v", before, after)
 		}
 		b.in(func() {
-			if g := b.s.run.Goal(); g.Y != 2 {
+			if g := b.s.robot().Goal(); g.Y != 2 {
 				t.Errorf("the goal is back at %v", g)
 			}
 		})
@@ -158,8 +158,8 @@ func TestRestartFoldsWhatWasDoneByHand(t *testing.T) {
 		b.say(v, `{"kind":"number","path":"robot.speed_m_s","value":0.3}`)
 		b.say(v, `{"kind":"restart"}`)
 		b.in(func() {
-			if b.s.run.Tick() != 0 || len(b.s.sc.Edits) != 0 || b.s.sc.Goal.Y != 2 || b.s.sc.Robot.Speed != 0.3 {
-				t.Errorf("tick %d, %d edits, goal %v, speed %v", b.s.run.Tick(), len(b.s.sc.Edits), b.s.sc.Goal, b.s.sc.Robot.Speed)
+			if b.s.tick() != 0 || len(b.s.sc.Edits) != 0 || b.s.sc.Goal.Y != 2 || b.s.sc.Robot.Speed != 0.3 {
+				t.Errorf("tick %d, %d edits, goal %v, speed %v", b.s.tick(), len(b.s.sc.Edits), b.s.sc.Goal, b.s.sc.Robot.Speed)
 			}
 		})
 	})
@@ -174,8 +174,8 @@ func TestRestartOfAnUntouchedLinkShowsItAgain(t *testing.T) {
 		text := string(b.text())
 		b.say(v, `{"kind":"restart"}`)
 		b.in(func() {
-			if g := b.s.run.Goal(); b.s.run.Tick() != 0 || g.Y != 3 {
-				t.Errorf("tick %d, goal %v", b.s.run.Tick(), g)
+			if g := b.s.robot().Goal(); b.s.tick() != 0 || g.Y != 3 {
+				t.Errorf("tick %d, goal %v", b.s.tick(), g)
 			}
 		})
 		if string(b.text()) != text {

@@ -105,7 +105,7 @@ func TestEndedSessionComesBackWhereItWas(t *testing.T) {
 			t.Errorf("came back as %+v, was %+v", after, before)
 		}
 		again.in(func() {
-			if g := again.s.run.Goal(); g.Y != 2 {
+			if g := again.s.robot().Goal(); g.Y != 2 {
 				t.Errorf("the goal is at %v", g)
 			}
 		})

@@ -9,7 +9,6 @@ import (
 	"leeway/sim"
 	"leeway/sim/floor"
 	"leeway/sim/geom"
-	"leeway/sim/scenario"
 )
 
 const (
@@ -37,6 +36,9 @@ type grip struct {
 // hand moves in the run: the list of edits is part of the file and the link.
 const gripEvery = 0.05
 
+// longAgo is before any tick.
+const longAgo = math.MinInt64 / 2
+
 // receiveDrag takes one message of a drag.
 func (s *Session) receiveDrag(v *viewer, m *message) {
 	at := geom.Vec{X: toMillimetre(m.X), Y: toMillimetre(m.Y)}
@@ -53,7 +55,7 @@ func (s *Session) receiveDrag(v *viewer, m *message) {
 	}
 	g := s.grips[t]
 	if g == nil {
-		g = &grip{origin: s.place(t), last: math.MinInt64 / 2}
+		g = &grip{origin: s.place(t), last: longAgo}
 		s.grips[t] = g
 	}
 	g.by, g.want, g.behind = v, at, true
@@ -95,15 +97,15 @@ func (s *Session) thingOf(m *message) (t thing, fault string) {
 func (s *Session) place(t thing) geom.Vec {
 	switch t.kind {
 	case sim.MoveGoal:
-		return s.run.Goal()
+		return s.robot().Goal()
 	case sim.MoveRobot:
-		return s.run.Pose().Pos
+		return s.robot().Pose().Pos
 	case sim.MoveSolid:
-		return s.run.World().SolidAt(t.index).Points[0]
+		return s.robot().World().SolidAt(t.index).Points[0]
 	}
-	edits := s.run.Edits()
+	edits := s.robot().Edits()
 	for i := len(edits) - 1; i >= 0; i-- {
-		if e := &edits[i]; e.Kind == sim.MoveMover && e.Index == t.index && e.Tick <= s.run.Tick() {
+		if e := &edits[i]; e.Kind == sim.MoveMover && e.Index == t.index && e.Tick <= s.tick() {
 			return e.Pos
 		}
 	}
@@ -120,7 +122,7 @@ func (s *Session) pullGrips() {
 // pull moves a thing in the run to where it was last seen, unless it moved only
 // just now, or that place is none for it.
 func (s *Session) pull(t thing, g *grip, now bool) {
-	tick := s.run.Tick()
+	tick := s.tick()
 	soon := float64(tick-g.last)*s.dt < gripEvery
 	if !g.behind || soon && tick != g.last && !now {
 		return
@@ -142,7 +144,7 @@ func (s *Session) letGo(v *viewer, t thing, g *grip, at geom.Vec) {
 	if fault == "" {
 		fault = s.faultOfFloor(t)
 	}
-	if fault == "" && s.place(t) != at && len(s.run.Edits()) >= scenario.MaxEdits {
+	if fault == "" && s.place(t) != at && s.fullOfEdits() {
 		fault = fullOfEdits
 	}
 	if fault != "" {
@@ -168,7 +170,7 @@ func (s *Session) dropGrips(v *viewer) {
 // faultAt says why a thing cannot be at a place, or nothing. It asks only what can
 // be answered at every movement of a hand.
 func (s *Session) faultAt(t thing, at geom.Vec) string {
-	w := s.run.World()
+	w := s.robot().World()
 	switch t.kind {
 	case sim.MoveGoal:
 		if !s.onFloor(at, at) {
@@ -181,7 +183,7 @@ func (s *Session) faultAt(t thing, at geom.Vec) string {
 		if !s.onFloor(at, at) {
 			return "the robot must be on the floor"
 		}
-		hull := s.run.Config().Hull
+		hull := s.robot().Config().Hull
 		if n, ok := w.Nearest(at, hull); ok && n.Distance < hull-1e-6 {
 			name := "a mover"
 			if !n.Ref.Mover {
@@ -236,7 +238,7 @@ func (s *Session) faultOfFloor(t thing) string {
 	if t.kind == sim.MoveRobot {
 		return ""
 	}
-	n, ok := s.run.World().Nearest(s.run.Goal(), 0.001)
+	n, ok := s.robot().World().Nearest(s.robot().Goal(), 0.001)
 	if t.kind == sim.MoveSolid && ok && n.Distance < 0 && n.Ref == (floor.Ref{Index: t.index}) {
 		return "the goal would be inside " + s.solidName(t.index)
 	}

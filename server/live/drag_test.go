@@ -28,7 +28,7 @@ func TestDragWhilePausedIsSeenAtOnce(t *testing.T) {
 			t.Errorf("moved %v, goal %v, tick %d", f.Moved, f.Goal, f.Tick)
 		}
 		b.in(func() {
-			if n := len(b.s.run.Edits()); n != 2 {
+			if n := len(b.s.robot().Edits()); n != 2 {
 				t.Errorf("%d edits for two things at one tick", n)
 			}
 		})
@@ -53,7 +53,7 @@ func TestDragInARunningRobotIsThinnedAndEndsWhereItWasDropped(t *testing.T) {
 		}
 		b.say(v, `{"kind":"drag","what":"goal","x":7,"y":3.456,"done":true}`)
 		b.in(func() {
-			edits := b.s.run.Edits()
+			edits := b.s.robot().Edits()
 			if n := len(edits); n < 40 || n > 62 {
 				t.Errorf("%d edits in 3 s; one every 50 ms is meant", n)
 			}
@@ -78,7 +78,7 @@ func TestLastPlaceCountsWhenTheHandStandsStillOrTheViewerGoes(t *testing.T) {
 		b.say(v, `{"kind":"drag","what":"goal","x":7,"y":3.3}`)
 		time.Sleep(200 * time.Millisecond)
 		b.in(func() {
-			if y := b.s.run.Goal().Y; y != 3.3 {
+			if y := b.s.robot().Goal().Y; y != 3.3 {
 				t.Errorf("the goal is at %v", y)
 			}
 			b.s.leaves(v)
@@ -147,7 +147,7 @@ func TestDragThroughAnImpossiblePlaceEndsWell(t *testing.T) {
 		for x := 7.0; x > 2; x -= 0.1 { // right through the desk
 			b.say(v, fmt.Sprintf(`{"kind":"drag","what":"goal","x":%g,"y":3}`, x))
 			b.in(func() {
-				if g := b.s.run.Goal(); g.X > 3 && g.X < 3.6 {
+				if g := b.s.robot().Goal(); g.X > 3 && g.X < 3.6 {
 					t.Fatalf("the goal is in the desk, at %v", g)
 				}
 			})
@@ -174,7 +174,7 @@ func TestCarriedRobotGoesOnFromThere(t *testing.T) {
 		b.say(v, `{"kind":"drag","what":"robot","x":4.5,"y":1.5,"done":true}`)
 		time.Sleep(100 * time.Millisecond)
 		b.in(func() {
-			if p := b.s.run.Pose().Pos; math.Hypot(p.X-4.5, p.Y-1.5) > 0.1 {
+			if p := b.s.robot().Pose().Pos; math.Hypot(p.X-4.5, p.Y-1.5) > 0.1 {
 				t.Errorf("the robot is at %v", p)
 			}
 		})
@@ -259,7 +259,7 @@ func TestEditLimitIsSaid(t *testing.T) {
 		b.say(v, `{"kind":"drag","what":"start","x":1.2,"y":3,"done":true}`) // begins again: there is room now
 		b.say(v, `{"kind":"drag","what":"goal","x":7,"y":4,"done":true}`)
 		b.in(func() {
-			if g := b.s.run.Goal(); g.Y != 4 {
+			if g := b.s.robot().Goal(); g.Y != 4 {
 				t.Errorf("the goal is at %v", g)
 			}
 		})

@@ -4,13 +4,11 @@ import (
 	"math"
 	"strconv"
 	"unicode/utf8"
-
-	"leeway/server/watch"
 )
 
 // frame is what has changed: the message that is sent about thirty times a second.
 type frame struct {
-	Tick      int64
+	Tick      int64 // where the tape is looked at, as all that follows
 	Time      float64
 	Playing   bool
 	Speed     float64
@@ -37,8 +35,12 @@ type frame struct {
 	Status    string
 	Reason    string
 	Hash      uint64
-	TrailFrom int
-	Trail     []watch.Spot
+	Length    int64
+	AtHead    bool
+	Shadows   []shadowNow // none when they are off
+	Exits     []exitNow
+	Verdict   verdict
+	Tape      additions
 }
 
 type movedSolid struct {
@@ -118,28 +120,24 @@ func (f *frame) append(b []byte) []byte {
 	b = appendText(b, f.Reason)
 	b = append(b, `,"hash":"`...)
 	b = appendHash(b, f.Hash)
-	b = append(b, '"')
-	b = appendCount(b, "trail_from", f.TrailFrom)
-	b = append(b, `,"trail":`...)
-	b = appendTrail(b, f.Trail)
-	return append(b, '}')
-}
-
-func appendTrail(b []byte, spots []watch.Spot) []byte {
-	b = append(b, '[')
-	for i, s := range spots {
-		if i > 0 {
-			b = append(b, ',')
-		}
-		b = append(b, '[')
-		b = appendNumber(b, s.X)
-		b = append(b, ',')
-		b = appendNumber(b, s.Y)
-		b = append(b, ',')
-		b = strconv.AppendInt(b, int64(s.Mode), 10)
-		b = append(b, ']')
+	b = append(b, `","length":`...)
+	b = strconv.AppendInt(b, f.Length, 10)
+	b = append(b, `,"at_head":`...)
+	b = strconv.AppendBool(b, f.AtHead)
+	if len(f.Shadows) > 0 {
+		b = append(b, `,"shadows":`...)
+		b = appendShadows(b, f.Shadows)
 	}
-	return append(b, ']')
+	b = append(b, `,"exits":`...)
+	b = appendExits(b, f.Exits)
+	b = append(b, `,"verdict":`...)
+	b = f.Verdict.append(b)
+	b = append(b, `,"tape":`...)
+	b = f.Tape.append(b)
+	b = appendCount(b, "trail_from", f.Tape.From)
+	b = append(b, `,"trail":`...)
+	b = appendTrail(b, f.Tape.Rows)
+	return append(b, '}')
 }
 
 func appendField(b []byte, name string, v float64) []byte {

@@ -4,9 +4,12 @@ import (
 	"encoding/json"
 	"math"
 
+	"leeway/server/brief"
 	"leeway/server/watch"
 	"leeway/sim/drive"
 	"leeway/sim/geom"
+	"leeway/sim/shadow"
+	"leeway/sim/steer"
 )
 
 // hello is everything that a viewer needs to draw a session.
@@ -35,12 +38,24 @@ type hello struct {
 	Modes       []helloMode  `json:"modes"`
 	Solids      []helloSolid `json:"solids"`
 	Movers      []helloMover `json:"movers"`
-	Brief       []Part       `json:"brief"`
+	Brief       []brief.Part `json:"brief"`
 	Asked       helloAsked   `json:"asked"`
 
-	// Written by appendTrail and frame.append.
+	Shadows  bool          `json:"shadows"`
+	Advice   []helloAdvice `json:"advice"`
+	Ceiling  *float64      `json:"ceiling"`   // m/s, of the look-ahead rule; null: there is none
+	WheelMax *float64      `json:"wheel_max"` // rad/s; null: wheels have no limit
+
+	// Written by hand, see record.go and frame.go.
+	Tape  json.RawMessage `json:"tape"`
 	Trail json.RawMessage `json:"trail"`
 	Frame json.RawMessage `json:"frame"`
+}
+
+type helloAdvice struct {
+	About string `json:"about"`
+	Holds bool   `json:"holds"`
+	Text  string `json:"text"`
 }
 
 type helloMode struct {
@@ -71,10 +86,10 @@ type helloAsked struct {
 	Switches int     `json:"switches"` // −1: not asked
 }
 
-// hello returns the message. It holds the whole trail, and a frame that adds
-// nothing to it.
+// hello returns the message. It holds all that is known of the tape, and a frame
+// that adds nothing to it.
 func (s *Session) hello() []byte {
-	r, c := s.run, s.run.Config()
+	r, c := s.robot(), s.robot().Config()
 	goal := s.place(thing{kind: goalKind})
 	h := hello{
 		Kind: "hello", Session: s.id, Name: s.sc.Name, Purpose: s.sc.Purpose, File: string(s.canonical()),
@@ -87,7 +102,7 @@ func (s *Session) hello() []byte {
 		Mount: c.Ring.Mount, RangeMax: c.Ring.Max, Bearings: rounded(r.Scan().Bearing),
 		Motion: motion(c.Drive.Model), AllRound: c.Ring.AllRound,
 		Modes: []helloMode{}, Solids: []helloSolid{}, Movers: []helloMover{},
-		Brief: s.brief(),
+		Brief: brief.Of(s.standing()),
 		Asked: helloAsked{c.Asked.Within, c.Asked.Leeway, c.Asked.Switches},
 	}
 	for i := range c.Logic.Modes {
@@ -108,12 +123,24 @@ func (s *Session) hello() []byte {
 			m.ID, tidy(m.Radius), [2]float64{tidy(m.Half.X), tidy(m.Half.Y)}, tidy(m.Heading), pairs(m.Route, shift), m.Loop,
 		})
 	}
-	spots := s.trail.Spots()
-	h.Trail = appendTrail(nil, spots)
-	told := s.told
-	s.told = len(spots)
-	s.fillFrame()
-	s.told = told
+	h.Shadows, h.Advice = s.set().Shadows(), []helloAdvice{}
+	for _, a := range shadow.Advise(*c) {
+		h.Advice = append(h.Advice, helloAdvice(a))
+	}
+	if c.Drive.Model == drive.TwoWheels {
+		if c.Steer.Rule == steer.LookAhead {
+			h.Ceiling = orNull(c.Steer.Ceiling())
+		}
+		if c.Drive.MaxWheelSpeed > 0 {
+			h.WheelMax = orNull(c.Drive.MaxWheelSpeed)
+		}
+	}
+	all := s.known()
+	var whole additions
+	whole.since(told{every: all.every}, all, &s.tape.Record, s.models())
+	h.Tape = whole.appendWhole(nil, all.every, s.tape.Length())
+	h.Trail = appendTrail(nil, whole.Rows)
+	s.fillFrame(all)
 	s.shown.Moved = s.shown.Moved[:0] // the solids above are where they are now
 	h.Frame = s.shown.append(nil)
 
@@ -134,6 +161,15 @@ func motion(m drive.Model) string {
 		return "unicycle"
 	}
 	return "two_wheels"
+}
+
+// orNull returns a number, or nil where there is none.
+func orNull(v float64) *float64 {
+	if !finite(v) {
+		return nil
+	}
+	v = tidy(v)
+	return &v
 }
 
 // tidy rounds to what frames are written with, so that a thing is at the same

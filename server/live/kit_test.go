@@ -107,12 +107,12 @@ func (b *bench) in(f func()) {
 }
 
 func (b *bench) tick() (tick int64) {
-	b.in(func() { tick = b.s.run.Tick() })
+	b.in(func() { tick = b.s.tick() })
 	return tick
 }
 
 func (b *bench) outcome() (o sim.Outcome) {
-	b.in(func() { o = b.s.run.Outcome() })
+	b.in(func() { o = b.s.robot().Outcome() })
 	return o
 }
 
@@ -170,6 +170,7 @@ func last(t testing.TB, messages [][]byte, kind string) []byte {
 // greeting is a hello as a client reads it.
 type greeting struct {
 	hello
+	Tape  tapeHeard    `json:"tape"`
 	Trail [][3]float64 `json:"trail"`
 	Frame heard        `json:"frame"`
 }

@@ -11,6 +11,7 @@ import (
 	"sync"
 	"time"
 
+	"leeway/server/brief"
 	"leeway/server/store"
 	"leeway/sim/scenario"
 )
@@ -116,7 +117,7 @@ func (l *Lab) Create(ctx context.Context, s *scenario.Scenario, o Opening) (id s
 	if err != nil {
 		return "", err
 	}
-	kept := store.Session{ID: id, Tick: o.Tick, Playing: o.Playing, Speed: 1}
+	kept := store.Session{ID: id, Tick: o.Tick, Playing: o.Playing, Speed: 1, Shadows: true}
 	if err := l.begin(ctx, s, kept); err != nil {
 		return "", err
 	}
@@ -167,7 +168,7 @@ func (l *Lab) begin(ctx context.Context, sc *scenario.Scenario, kept store.Sessi
 			return ErrClosed
 		case len(l.sessions) < l.opt.Sessions:
 			l.sessions[kept.ID] = s
-			l.loops.Go(func() { s.loop(l.ctx, kept.Tick) })
+			l.loops.Go(func() { s.loop(l.ctx, kept) })
 			l.mu.Unlock()
 			return nil
 		}
@@ -297,7 +298,7 @@ func (l *Lab) ask(ctx context.Context, id string, f func(*Session)) error {
 		if err != nil {
 			return err
 		}
-		err = s.do(ctx, func() { f(s) })
+		err = s.do(ctx, func() { s.goWhereSought(); f(s) })
 		if !errors.Is(err, errEnded) {
 			return err
 		}
@@ -314,14 +315,14 @@ func (l *Lab) Scenario(ctx context.Context, id string) (sc *scenario.Scenario, e
 // Bench is what the page of a session says before its stream is connected.
 type Bench struct {
 	Name, Purpose string
-	Brief         []Part
+	Brief         []brief.Part
 	Hello         []byte // the first message of the stream
 }
 
 // Bench returns what the page of a session says.
 func (l *Lab) Bench(ctx context.Context, id string) (b Bench, err error) {
 	err = l.ask(ctx, id, func(s *Session) {
-		b = Bench{Name: s.sc.Name, Purpose: s.sc.Purpose, Brief: s.brief(), Hello: s.hello()}
+		b = Bench{Name: s.sc.Name, Purpose: s.sc.Purpose, Brief: brief.Of(s.standing()), Hello: s.hello()}
 	})
 	return b, err
 }

@@ -25,6 +25,9 @@ type message struct {
 	Path  string          `json:"path"`
 	Value json.RawMessage `json:"value"`
 
+	Tick *int64 `json:"tick"` // seek
+	On   *bool  `json:"on"`   // shadows
+
 	number float64 // Value of a number or speed
 	choice string  // Value of a choice
 }
@@ -36,7 +39,15 @@ func parseMessage(data []byte) (*message, error) {
 		return nil, errors.New("that message is not JSON of the kind that Leeway understands")
 	}
 	switch m.Kind {
-	case "play", "pause", "tick", "restart", "resync":
+	case "play", "pause", "tick", "back", "restart", "resync":
+	case "seek":
+		if m.Tick == nil {
+			return nil, errors.New("a seek says which tick to look at")
+		}
+	case "shadows":
+		if m.On == nil {
+			return nil, errors.New("the shadows are to be on or off")
+		}
 	case "drag":
 		if math.Abs(m.X) > farAway || math.Abs(m.Y) > farAway {
 			return nil, errors.New("that place is out of this world")

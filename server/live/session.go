@@ -4,15 +4,14 @@ import (
 	"context"
 	"errors"
 	"math"
-	"reflect"
 	"sync/atomic"
 	"time"
 
 	"leeway/server/store"
-	"leeway/server/watch"
 	"leeway/sim"
 	"leeway/sim/floor"
 	"leeway/sim/scenario"
+	"leeway/sim/shadow"
 )
 
 const (
@@ -48,11 +47,15 @@ type Session struct {
 	// Owned by the loop from here on.
 	sc     *scenario.Scenario // as the run began, with the edits it began with
 	byHand bool               // somebody has changed something since the run began
-	run    *sim.Run
+	tape   *shadow.Tape
 	dt     float64
 	onMap  *floor.Map // of floor; kept while the floor stays as it is
 	floor  floor.Config
+	moved  []int   // solids that an edit of the tape moves, in order
+	making *making // the tape that is to come in place of this one, or nil
+	sought int64   // where somebody wants to look at the tape; −1: where it is looked at
 
+	shadows   bool // wanted
 	playing   bool
 	resume    bool // it was playing when the run ended: goes on when the run does
 	speed     float64
@@ -63,15 +66,15 @@ type Session struct {
 	retire  bool // end as soon as nobody watches
 	broken  bool // not where it ought to be: must not be saved
 
-	trail     watch.Trail
-	told      int  // spots of the trail that frames have carried
+	told      told // what frames have carried of the tape
+	era       int  // see Session.eraNow; that of the last hello to all
+	eraAt     time.Time
 	changed   bool // there is something for a frame to say
 	anew      bool // every viewer needs a hello
 	nextFrame time.Time
 	shown     frame // the memory of the last frame
 
 	grips map[thing]*grip
-	moved map[int]bool // solids moved since everyone's last hello
 
 	saveAt   time.Time // zero: all is saved
 	textKept bool      // the store has the text as it is
@@ -82,7 +85,7 @@ type Session struct {
 func newSession(l *Lab, sc *scenario.Scenario, kept store.Session) (*Session, error) {
 	s := &Session{
 		id: kept.ID, lab: l, calls: make(chan func()), done: make(chan struct{}),
-		byHand: kept.ByHand, playing: kept.Playing, speed: kept.Speed,
+		byHand: kept.ByHand, playing: kept.Playing, speed: kept.Speed, shadows: kept.Shadows, sought: -1,
 		viewers: map[*viewer]struct{}{},
 		// A session that was loaded has its text in the store.
 		textKept: kept.Scenario != nil,
@@ -98,31 +101,24 @@ func newSession(l *Lab, sc *scenario.Scenario, kept store.Session) (*Session, er
 // begin puts the run of a valid scenario in place of the present one, at tick 0.
 // On an error everything stays as it was.
 func (s *Session) begin(sc *scenario.Scenario) error {
-	c, err := sc.Config()
+	l, err := s.lay(sc, s.shadows)
 	if err != nil {
 		return err
 	}
-	m := s.onMap
-	if m == nil || !reflect.DeepEqual(s.floor, c.Floor) {
-		if m, err = floor.NewMap(c.Floor, c.Ring.Mount+c.Ring.Max); err != nil {
-			return err
-		}
-	}
-	run, err := sim.NewOn(m, c)
-	if err != nil {
-		return err
-	}
-	s.sc, s.run, s.dt, s.onMap, s.floor = sc, run, c.Tick, m, c.Floor
 	s.resume = false
-	s.trail.Reset()
-	s.trail.Note(run)
-	s.told = 0
 	s.grips = map[thing]*grip{}
-	s.moved = map[int]bool{}
-	s.anew = true
-	s.setClock(time.Now())
+	s.install(l)
 	return nil
 }
+
+// set returns the models where the tape is looked at.
+func (s *Session) set() *shadow.Set { return s.tape.Now() }
+
+// robot returns the robot where the tape is looked at.
+func (s *Session) robot() *sim.Run { return s.set().Run(shadow.Robot) }
+
+// tick returns where the tape is looked at.
+func (s *Session) tick() int64 { return s.set().Tick() }
 
 // do calls f in the session's goroutine and waits until it has returned. The
 // error is errEnded, or that of ctx; then f has not been called.
@@ -147,16 +143,18 @@ func (s *Session) post(ctx context.Context, f func()) error {
 	}
 }
 
-// loop runs the session from the given tick on, until ctx ends or nobody has
+// loop runs the session from where it was kept, until ctx ends or nobody has
 // watched for long.
-func (s *Session) loop(ctx context.Context, at int64) {
-	s.stepTo(ctx, at)
+func (s *Session) loop(ctx context.Context, kept store.Session) {
+	s.stepTo(ctx, kept)
 	s.setClock(time.Now())
 	timer := time.NewTimer(time.Hour)
 	defer timer.Stop()
 	for ctx.Err() == nil && !s.deserted(time.Now()) {
 		now := time.Now()
+		s.makeOn(now)
 		s.advance(now)
+		s.seekOn(now)
 		s.tell(now)
 		s.save(now)
 
@@ -216,8 +214,10 @@ func (s *Session) nextWake(now time.Time) (wake time.Time, ok bool) {
 		sooner(s.nextFrame)
 	}
 	switch {
+	case s.making != nil:
+		sooner(now)
 	case !s.playing:
-	case s.speed == 0 || s.target(now) > s.run.Tick():
+	case s.speed == 0 || s.target(now) > s.tick():
 		sooner(now)
 	case len(s.viewers) == 0:
 		sooner(now.Add(unseenEvery))
@@ -232,7 +232,7 @@ func (s *Session) nextWake(now time.Time) (wake time.Time, ok bool) {
 }
 
 // setClock makes now the time at which the run is where it is.
-func (s *Session) setClock(now time.Time) { s.clock, s.clockTick = now, s.run.Tick() }
+func (s *Session) setClock(now time.Time) { s.clock, s.clockTick = now, s.tick() }
 
 // target returns the tick at which a playing run with a speed ought to be.
 func (s *Session) target(now time.Time) int64 {
@@ -242,7 +242,7 @@ func (s *Session) target(now time.Time) int64 {
 // tickDue returns when a playing run with a speed ought to step next: a moment
 // later than that, so that no rounding can have target disagree.
 func (s *Session) tickDue() time.Time {
-	ticks := float64(s.run.Tick() + 1 - s.clockTick)
+	ticks := float64(s.tick() + 1 - s.clockTick)
 	return s.clock.Add(time.Duration(math.Ceil(ticks*s.dt/s.speed*1e9)) + time.Microsecond)
 }
 
@@ -252,14 +252,21 @@ func (s *Session) advance(now time.Time) {
 	if !s.playing {
 		return
 	}
+	if s.making != nil { // the clock waits for the other tape
+		s.setClock(now)
+		return
+	}
 	s.pullGrips()
-	limit := s.run.Tick() + sliceTicks
+	limit := s.tick() + sliceTicks
 	target := limit
 	if s.speed > 0 {
 		target = s.target(now)
 		limit = min(limit, target)
 	}
-	for n := 1; s.run.Tick() < limit; n++ {
+	if !s.tape.AtHead() && s.tick() < limit {
+		s.lookAt(limit)
+	}
+	for n := 1; s.tick() < limit; n++ {
 		if !s.step() {
 			s.playing, s.resume = false, true
 			s.changed = true
@@ -271,7 +278,7 @@ func (s *Session) advance(now time.Time) {
 		}
 	}
 	if s.speed > 0 {
-		behind := float64(target-s.run.Tick()) * s.dt / s.speed
+		behind := float64(target-s.tick()) * s.dt / s.speed
 		if behind > letGo.Seconds() {
 			s.setClock(now)
 		}
@@ -279,26 +286,29 @@ func (s *Session) advance(now time.Time) {
 	s.saveBy(now.Add(saveEvery))
 }
 
-// step goes on by one tick. It returns false when the run has ended for good: then
-// nothing has changed.
+// step goes on by one tick. It returns false when all models have ended for good:
+// then nothing has changed.
 func (s *Session) step() bool {
-	if !s.run.Going() {
+	if s.tape.Done() {
 		return false
 	}
-	s.run.Step()
+	s.tape.Step()
 	s.changed = true
-	if s.trail.Note(s.run) {
-		s.anew = true // the spots have other numbers now
-	}
 	return true
 }
 
-// stepTo steps to a tick at once, or to the end of the run.
-func (s *Session) stepTo(ctx context.Context, tick int64) {
-	for n := 1; s.run.Tick() < tick; n++ {
+// lookAt looks at a tick of the tape, or at its end.
+func (s *Session) lookAt(tick int64) {
+	s.tape.LookAt(tick)
+	s.changed = true
+}
+
+// stepTo computes the tape of a session that was kept, and looks at where it was
+// looked at.
+func (s *Session) stepTo(ctx context.Context, kept store.Session) {
+	length := max(kept.Length, kept.Tick)
+	for n := 1; s.tape.Length() < length; n++ {
 		if !s.step() {
-			s.resume = s.resume || s.playing
-			s.playing = false
 			break
 		}
 		if n%4096 == 0 && ctx.Err() != nil {
@@ -306,18 +316,15 @@ func (s *Session) stepTo(ctx context.Context, tick int64) {
 			return
 		}
 	}
-	// What was changed at this very tick is to be seen, but is due only with the
-	// next step. To enter the last change again does it and those before it.
-	if e := s.run.Edits(); len(e) > 0 {
-		for i := len(e) - 1; i >= 0 && e[i].Tick >= s.run.Tick(); i-- {
-			if e[i].Tick == s.run.Tick() {
-				again := e[i]
-				if err := s.run.Edit(again); err != nil {
-					s.lab.opt.Log.Error("an edit of the file cannot be done", "session", s.id, "error", err)
-				}
-				break
-			}
-		}
+	s.lookAt(kept.Tick)
+	s.stopAtEnd()
+}
+
+// stopAtEnd stops a run that has nowhere to go on to.
+func (s *Session) stopAtEnd() {
+	if s.tape.Done() {
+		s.resume = s.resume || s.playing
+		s.playing = false
 	}
 }
 
@@ -335,7 +342,7 @@ func (s *Session) save(now time.Time) {
 	}
 	s.saveAt = time.Time{}
 	kept := store.Session{
-		ID: s.id, Tick: s.run.Tick(), Playing: s.playing || s.resume, Speed: s.speed, ByHand: s.byHand, Updated: now,
+		ID: s.id, Tick: s.tick(), Length: s.tape.Length(), Shadows: s.shadows, Playing: s.playing || s.resume, Speed: s.speed, ByHand: s.byHand, Updated: now,
 	}
 	if !s.textKept {
 		kept.Scenario = s.canonical()

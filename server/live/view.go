@@ -1,12 +1,12 @@
 package live
 
 import (
-	"maps"
-	"slices"
+	"math"
 	"time"
 
 	"leeway/sim"
 	"leeway/sim/geom"
+	"leeway/sim/shadow"
 )
 
 // helloEvery is how often a viewer may be told everything anew on its own wish.
@@ -39,10 +39,13 @@ func (s *Session) tell(now time.Time) {
 		s.nextFrame = now.Add(frameEvery)
 	}
 	s.changed = false
+	era := s.eraNow()
+	if era != s.era && now.Sub(s.eraAt) >= helloEvery || !s.known().continues(s.told) {
+		s.anew = true
+	}
 	if s.anew {
 		s.anew = false
-		s.told = len(s.trail.Spots())
-		clear(s.moved)
+		s.told, s.era, s.eraAt = s.known(), era, now
 		hello := s.hello()
 		for v := range s.viewers {
 			v.putHello(hello)
@@ -50,10 +53,11 @@ func (s *Session) tell(now time.Time) {
 		}
 		return
 	}
+	s.changed = era != s.era // it is told later
 	// The frame goes out before a hello to some, so that the next one continues
-	// the trail for all of them alike.
-	s.fillFrame()
-	s.told = len(s.trail.Spots())
+	// the tape for all of them alike.
+	s.fillFrame(s.told)
+	s.told = s.known()
 	bytes := s.shown.append(nil)
 	var hello []byte
 	for v := range s.viewers {
@@ -73,12 +77,28 @@ func (s *Session) tell(now time.Time) {
 	}
 }
 
-// fillFrame makes s.shown say what is the case now, with the spots of the trail
-// that no frame has carried yet.
-func (s *Session) fillFrame() {
-	r, f := s.run, &s.shown
+// eraNow tells apart the moments between which the tape has a change that a frame
+// does not show: of a number, or of the route of a mover.
+func (s *Session) eraNow() int {
+	n := 0
+	for _, e := range s.robot().Edits() {
+		if e.Tick > s.tick() {
+			break
+		}
+		if e.Kind == sim.SetNumber || e.Kind == sim.MoveMover {
+			n++
+		}
+	}
+	return n
+}
+
+// fillFrame makes s.shown say what is the case where the tape is looked at, and
+// what of the tape has not been told before.
+func (s *Session) fillFrame(before told) {
+	set, r, f := s.set(), s.robot(), &s.shown
 	o := r.Outcome()
-	f.Tick, f.Time = o.Ticks, o.Time
+	f.Tick = set.Tick()
+	f.Time = float64(f.Tick) * s.dt
 	f.Playing, f.Speed, f.Viewers = s.playing, s.speed, len(s.viewers)
 	p, b := r.Pose(), r.Belief()
 	f.Pose = [3]float64{p.Pos.X, p.Pos.Y, p.Theta}
@@ -98,12 +118,26 @@ func (s *Session) fillFrame() {
 	}
 	f.Goal = pair(s.place(thing{kind: sim.MoveGoal}))
 	f.Moved = f.Moved[:0]
-	for _, i := range slices.Sorted(maps.Keys(s.moved)) {
+	for _, i := range s.moved {
 		at := s.place(thing{sim.MoveSolid, i})
 		f.Moved = append(f.Moved, movedSolid{s.floor.Solids[i].ID, at.X, at.Y})
 	}
 	f.Status, f.Reason, f.Hash = o.Status.String(), o.Reason, o.Hash
-	f.TrailFrom, f.Trail = s.told, s.trail.Spots()[s.told:]
+
+	f.Length, f.AtHead = s.tape.Length(), s.tape.AtHead()
+	f.fillShadows(set)
+	f.fillExits(r)
+	f.Verdict.fillModels(set)
+	f.Verdict.Shortest, f.Verdict.ShortestWhy = math.NaN(), "It is being worked out."
+	f.Tape.since(before, s.known(), &s.tape.Record, s.models())
+}
+
+// models returns how many models the tape has.
+func (s *Session) models() int {
+	if s.set().Shadows() {
+		return int(shadow.Models)
+	}
+	return 1
 }
 
 func pair(v geom.Vec) [2]float64 { return [2]float64{v.X, v.Y} }

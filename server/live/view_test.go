@@ -145,7 +145,7 @@ func TestTrailGoesOnWithoutGapsWhoeverComesAndGoes(t *testing.T) {
 			steady.hear(t, v.take())
 		}
 		var spots int
-		b.in(func() { spots = b.s.told })
+		b.in(func() { spots = b.s.told.rows })
 		if len(steady.trail) != spots {
 			t.Errorf("%d spots of %d", len(steady.trail), spots)
 		}

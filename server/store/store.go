@@ -2,8 +2,8 @@
 // again after the server was stopped, even by force.
 //
 // A session is kept as what it is a function of: the scenario with the edits so
-// far, and the tick it had reached. Nothing of the simulation's state is
-// written; whoever loads a session steps it there again.
+// far, how far it had been computed, and where in that it was looked at. Nothing of
+// the simulation's state is written; whoever loads a session steps it there again.
 //
 // A [Store] may be used by any number of goroutines. Two servers may share a
 // file; a session should be open in one of them at a time.
@@ -29,7 +29,9 @@ var ErrNotFound = errors.New("no such session")
 type Session struct {
 	ID       string
 	Scenario []byte // canonical text, edits so far included; a nil keeps what is there
-	Tick     int64
+	Tick     int64  // where its tape is looked at
+	Length   int64  // of the tape, ticks
+	Shadows  bool   // whether they are computed
 	Playing  bool
 	Speed    float64 // 0: as fast as it goes
 	ByHand   bool    // a person has changed something since the run began
@@ -76,6 +78,10 @@ var migrations = []string{
 		updated  INTEGER NOT NULL -- Unix time, ms
 	) STRICT;
 	CREATE INDEX sessions_by_age ON sessions (updated);`,
+	// What was kept before tapes stood at their end.
+	`ALTER TABLE sessions ADD COLUMN length INTEGER NOT NULL DEFAULT 0;
+	ALTER TABLE sessions ADD COLUMN shadows INTEGER NOT NULL DEFAULT 1;
+	UPDATE sessions SET length = tick;`,
 }
 
 func migrate(ctx context.Context, db *sql.DB) error {
@@ -110,8 +116,8 @@ func migrate(ctx context.Context, db *sql.DB) error {
 func (s *Store) Save(ctx context.Context, v Session) error {
 	if v.Scenario == nil {
 		res, err := s.db.ExecContext(ctx,
-			`UPDATE sessions SET tick = ?, playing = ?, speed = ?, by_hand = ?, updated = ? WHERE id = ?`,
-			v.Tick, v.Playing, v.Speed, v.ByHand, v.Updated.UnixMilli(), v.ID)
+			`UPDATE sessions SET tick = ?, length = ?, shadows = ?, playing = ?, speed = ?, by_hand = ?, updated = ? WHERE id = ?`,
+			v.Tick, v.Length, v.Shadows, v.Playing, v.Speed, v.ByHand, v.Updated.UnixMilli(), v.ID)
 		if err != nil {
 			return fmt.Errorf("a session could not be saved: %w", err)
 		}
@@ -121,10 +127,10 @@ func (s *Store) Save(ctx context.Context, v Session) error {
 		return nil
 	}
 	_, err := s.db.ExecContext(ctx,
-		`INSERT INTO sessions (id, scenario, tick, playing, speed, by_hand, updated) VALUES (?, ?, ?, ?, ?, ?, ?)
-		 ON CONFLICT (id) DO UPDATE SET scenario = excluded.scenario, tick = excluded.tick, playing = excluded.playing,
-		 speed = excluded.speed, by_hand = excluded.by_hand, updated = excluded.updated`,
-		v.ID, v.Scenario, v.Tick, v.Playing, v.Speed, v.ByHand, v.Updated.UnixMilli())
+		`INSERT INTO sessions (id, scenario, tick, length, shadows, playing, speed, by_hand, updated) VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?)
+		 ON CONFLICT (id) DO UPDATE SET scenario = excluded.scenario, tick = excluded.tick, length = excluded.length,
+		 shadows = excluded.shadows, playing = excluded.playing, speed = excluded.speed, by_hand = excluded.by_hand, updated = excluded.updated`,
+		v.ID, v.Scenario, v.Tick, v.Length, v.Shadows, v.Playing, v.Speed, v.ByHand, v.Updated.UnixMilli())
 	if err != nil {
 		return fmt.Errorf("a session could not be saved: %w", err)
 	}
@@ -136,8 +142,8 @@ func (s *Store) Load(ctx context.Context, id string) (Session, error) {
 	v := Session{ID: id}
 	var ms int64
 	err := s.db.QueryRowContext(ctx,
-		`SELECT scenario, tick, playing, speed, by_hand, updated FROM sessions WHERE id = ?`, id).
-		Scan(&v.Scenario, &v.Tick, &v.Playing, &v.Speed, &v.ByHand, &ms)
+		`SELECT scenario, tick, length, shadows, playing, speed, by_hand, updated FROM sessions WHERE id = ?`, id).
+		Scan(&v.Scenario, &v.Tick, &v.Length, &v.Shadows, &v.Playing, &v.Speed, &v.ByHand, &ms)
 	if errors.Is(err, sql.ErrNoRows) {
 		return Session{}, ErrNotFound
 	}

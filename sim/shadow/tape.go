@@ -1,6 +1,7 @@
 package shadow
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
@@ -17,16 +18,13 @@ import (
 // on from there shows what happened, bit for bit, and a change made there starts
 // another future.
 type Tape struct {
-	m     *floor.Map
-	cfg   sim.Config
 	head  *Set // the farthest that has been computed
 	view  *Set // where the tape is looked at, when that is not the head
 	spare *Set
 
-	marks   []*Set // snapshots of the head, one every markEvery ticks
-	every   int64  // ticks between marks
-	Record  Record
-	lastGap float64
+	marks  []*Set // snapshots of the head, one every markEvery ticks
+	every  int64  // ticks between marks
+	Record Record
 }
 
 // Record is what a tape keeps for lanes, strips and ways, of its whole length.
@@ -36,6 +34,7 @@ type Record struct {
 	Spans   []Span
 	Events  []Event
 	Ranges  [][]float32 // of the robot's beams, m, one slice a row
+	Recast  int         // how often what had been recorded was thinned or cut; in between, all lists only grow
 	pending [Models]pending
 }
 
@@ -123,7 +122,7 @@ func NewTape(m *floor.Map, c sim.Config, shadows bool) (*Tape, error) {
 	if err != nil {
 		return nil, err
 	}
-	t := &Tape{m: m, cfg: c, head: set, every: max(1, int64(math.Round(markEvery/c.Tick)))}
+	t := &Tape{head: set, every: max(1, int64(math.Round(markEvery/c.Tick)))}
 	t.Record.Every = max(1, int64(math.Round(rowEvery/c.Tick)))
 	for w := range Models {
 		t.Record.pending[w].mode = -1
@@ -166,13 +165,14 @@ func (t *Tape) Step() {
 	t.note()
 }
 
-// LookAt goes to a tick between 0 and Length.
+// LookAt goes to a tick between 0 and Length. What was changed at that very tick is done already.
 func (t *Tape) LookAt(tick int64) {
 	tick = min(max(tick, 0), t.head.tick)
 	if tick == t.head.tick {
 		if t.view != nil {
 			t.spare, t.view = t.view, nil
 		}
+		t.head.settle()
 		return
 	}
 	if t.view == nil {
@@ -190,6 +190,20 @@ func (t *Tape) LookAt(tick int64) {
 	}
 	for t.view.tick < tick {
 		t.view.Step()
+	}
+	t.view.settle()
+}
+
+// settle does the changes that are due at this tick now, rather than with the next step. To enter the last of them
+// again does it and those before it, and leaves the list of edits as it is.
+func (s *Set) settle() {
+	for _, r := range s.runs {
+		edits := r.Edits()
+		n, _ := slices.BinarySearchFunc(edits, s.tick+1, func(e sim.Edit, tick int64) int { return cmp.Compare(e.Tick, tick) })
+		if n > 0 && edits[n-1].Tick == s.tick {
+			// It was accepted when it was made, or with the config.
+			_ = r.Edit(edits[n-1])
+		}
 	}
 }
 
@@ -211,14 +225,14 @@ func (t *Tape) markBefore(tick int64) int {
 }
 
 // Edit does a person's change where the tape is looked at. In the past that cuts the tape there: what had been
-// computed beyond, changes included, is forgotten. cut says whether anything was.
+// computed beyond, changes included, is forgotten. cut says whether anything was. On an error nothing has changed.
 func (t *Tape) Edit(e sim.Edit) (cut bool, err error) {
+	if err := t.Now().Edit(e); err != nil {
+		return false, err
+	}
 	if t.view != nil {
 		t.cut()
 		cut = true
-	}
-	if err := t.head.Edit(e); err != nil {
-		return cut, err
 	}
 	t.note()
 	return cut, nil
@@ -232,21 +246,64 @@ func (t *Tape) cut() {
 		r.Forget()
 	}
 	t.marks = t.marks[:t.markBefore(tick)+1]
-	r := &t.Record
-	n, _ := slices.BinarySearchFunc(r.Rows, tick, func(x Row, tick int64) int { return int(x.Tick - tick) })
-	for n < len(r.Rows) && r.Rows[n].Tick <= tick {
-		n++
-	}
+	t.Record.cut(t.head)
+}
+
+// cut forgets what was recorded of later than the set, and goes on from where it stands.
+func (r *Record) cut(s *Set) {
+	r.Recast++
+	n, _ := slices.BinarySearchFunc(r.Rows, s.tick+1, func(x Row, tick int64) int { return cmp.Compare(x.Tick, tick) })
 	r.Rows, r.Ranges = r.Rows[:n], r.Ranges[:n]
-	r.Spans = slices.DeleteFunc(r.Spans, func(s Span) bool { return s.Tick > tick })
-	r.Events = slices.DeleteFunc(r.Events, func(e Event) bool { return e.Tick > tick })
-	for w := range t.head.runs {
-		run, p := t.head.runs[w], &r.pending[w]
+	r.Spans = slices.DeleteFunc(r.Spans, func(x Span) bool { return x.Tick > s.tick })
+	var partings [Models]int
+	r.Events = slices.DeleteFunc(r.Events, func(e Event) bool {
+		if e.Kind == PartingMark { // known only some time after its tick
+			partings[e.Who]++
+			return partings[e.Who] > len(s.Partings(e.Who))
+		}
+		return e.Tick > s.tick
+	})
+	for w, run := range s.runs {
+		p := &r.pending[w]
 		p.mode, p.side, p.status = run.Engine().Mode(), run.Engine().Side(), run.Status()
-		p.contacts, p.partings = run.Outcome().Contacts, len(t.head.Partings(Who(w)))
-		p.switches = slices.DeleteFunc(p.switches, func(at int64) bool { return at > tick })
-		p.chatters, p.past = false, false
+		p.contacts, p.partings = len(run.Contacts()), len(s.Partings(Who(w)))
+		p.switches = p.switches[:0]
+		for _, x := range run.Switches() {
+			if x.From != x.To {
+				p.switches = append(p.switches, x.Tick+1) // seen after the step that made it
+			}
+		}
+		p.prune(s)
+		p.chatters = len(p.switches) >= chatterSwitches
+		p.past = pastCeiling(run)
 	}
+}
+
+// DropShadows leaves the robot alone on the tape: it is the same robot. To have shadows again takes another tape.
+func (t *Tape) DropShadows() {
+	if !t.head.Shadows() {
+		return
+	}
+	for _, s := range t.marks {
+		s.dropShadows()
+	}
+	t.head.dropShadows()
+	if t.view != nil {
+		t.view.dropShadows()
+	}
+	t.spare = nil
+	r := &t.Record
+	r.Recast++
+	for i := range r.Rows {
+		clear(r.Rows[i].Models[Robot+1:])
+	}
+	r.Spans = slices.DeleteFunc(r.Spans, func(s Span) bool { return s.Who != Robot })
+	r.Events = slices.DeleteFunc(r.Events, func(e Event) bool { return e.Who != Robot })
+}
+
+func (s *Set) dropShadows() {
+	clear(s.runs[Robot+1:])
+	s.runs, s.apart = s.runs[:Robot+1], s.apart[:Robot+1]
 }
 
 // note records the head.
@@ -256,7 +313,7 @@ func (t *Tape) note() {
 		t.mark()
 	}
 	for w := range s.runs {
-		r.noteModel(s, Who(w), &t.cfg)
+		r.noteModel(s, Who(w))
 	}
 	if s.tick%r.Every == 0 && (len(r.Rows) == 0 || r.Rows[len(r.Rows)-1].Tick < s.tick) {
 		r.noteRow(s)
@@ -274,7 +331,7 @@ func (t *Tape) mark() {
 	}
 }
 
-func (r *Record) noteModel(s *Set, w Who, c *sim.Config) {
+func (r *Record) noteModel(s *Set, w Who) {
 	run, p := s.runs[w], &r.pending[w]
 	if mode, side := run.Engine().Mode(), run.Engine().Side(); mode != p.mode || side != p.side {
 		if p.mode >= 0 && mode != p.mode {
@@ -302,26 +359,36 @@ func (r *Record) noteModel(s *Set, w Who, c *sim.Config) {
 		p.partings = len(s.Partings(w))
 		return
 	}
-	if c.Steer.Rule == steer.LookAhead && run.Config().Drive.Model == drive.TwoWheels {
-		past := run.Wanted().Norm() > c.Steer.Ceiling()
-		if past && !p.past {
-			r.event(CeilingMark, w, s.tick, fmt.Sprintf("At %s the logic wanted %.2f m/s; up to %.2f m/s no heading asks a wheel for more than it has.",
-				Clock(float64(s.tick)*s.dt), run.Wanted().Norm(), c.Steer.Ceiling()))
-		}
-		p.past = past
+	past := pastCeiling(run)
+	if past && !p.past {
+		r.event(CeilingMark, w, s.tick, fmt.Sprintf("At %s the logic wanted %.2f m/s; up to %.2f m/s no heading asks a wheel for more than it has.",
+			Clock(float64(s.tick)*s.dt), run.Wanted().Norm(), run.Config().Steer.Ceiling()))
 	}
+	p.past = past
+}
+
+// pastCeiling reports whether more speed is wanted than the look-ahead rule can follow exactly.
+func pastCeiling(r *sim.Run) bool {
+	c := r.Config()
+	return c.Steer.Rule == steer.LookAhead && c.Drive.Model == drive.TwoWheels && r.Wanted().Norm() > c.Steer.Ceiling()
 }
 
 // noteSwitch keeps watch for chatter.
 func (r *Record) noteSwitch(s *Set, w Who) {
 	p := &r.pending[w]
-	window := int64(chatterWindow / s.dt)
-	p.switches = slices.DeleteFunc(append(p.switches, s.tick), func(at int64) bool { return at < s.tick-window })
+	p.switches = append(p.switches, s.tick)
+	p.prune(s)
 	many := len(p.switches) >= chatterSwitches
 	if many && !p.chatters {
 		r.event(ChatterMark, w, s.tick, fmt.Sprintf("At %s the %s had switched %d times within %.0f s.", Clock(float64(s.tick)*s.dt), w, len(p.switches), chatterWindow))
 	}
 	p.chatters = many
+}
+
+// prune forgets the switches that are too long ago for chatter.
+func (p *pending) prune(s *Set) {
+	window := int64(chatterWindow / s.dt)
+	p.switches = slices.DeleteFunc(p.switches, func(at int64) bool { return at < s.tick-window })
 }
 
 func (r *Record) event(k EventKind, w Who, tick int64, text string) {
@@ -357,6 +424,7 @@ func (r *Record) noteRow(s *Set) {
 
 // thin drops every other row.
 func (r *Record) thin() {
+	r.Recast++
 	r.Every *= 2
 	n := 0
 	for i, x := range r.Rows {
