@@ -70,32 +70,13 @@ func New(c Config) (*Run, error) {
 // NewOn is New on a floor map that other runs share; m must have been built
 // from the same floor.
 func NewOn(m *floor.Map, c Config) (*Run, error) {
-	if err := c.Check(); err != nil {
-		return nil, err
-	}
 	r := &Run{
-		cfg:      c,
-		dt:       c.Tick,
-		world:    m.NewWorld(),
-		pose:     c.Start,
-		goal:     c.Goal,
 		switches: make([]logic.Switch, 0, 256),
 		contacts: make([]Contact, 0, 64),
 	}
-	r.edits = append(r.edits, c.Edits...)
-	r.idealise()
-	r.ring = ring.New(r.cfg.Ring, c.Seed)
-	r.drive = drive.New(r.cfg.Drive, c.Tick, c.Seed, r.pose)
-	r.engine = logic.New(c.Logic)
-	r.input = logic.Input{GoalRadius: c.GoalRadius, Hull: c.Hull, Scan: r.ring.Scan()}
-	if r.cfg.Steer.Rule == steer.LookAhead && r.cfg.Drive.Model != drive.Point {
-		r.input.Ahead = r.cfg.Steer.Ahead
+	if err := r.Reset(m, c); err != nil {
+		return nil, err
 	}
-	for _, mv := range c.Floor.Movers {
-		r.moverStep = max(r.moverStep, mv.Speed*c.Tick)
-	}
-	r.measures = Outcome{Leeway: math.Inf(1), Hash: hashSeed}
-	r.measureLeeway()
 	return r, nil
 }
 
