@@ -48,7 +48,7 @@ var arrows = map[string][]string{
 }
 
 // above are the rooms over the run.
-var above = []string{"leeway/sim/shadow", "leeway/sim/reach", "leeway/sim/gen", "leeway/sim/study", "leeway/sim/drivelog"}
+var above = []string{"leeway/sim/shadow", "leeway/sim/reach", "leeway/sim/gen", "leeway/sim/study", "leeway/sim/study/stat", "leeway/sim/drivelog"}
 
 // exact are the functions of package math that return the same bits on every
 // machine: those that IEEE 754 rounds correctly, and those that need no rounding.
