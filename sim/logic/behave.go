@@ -101,15 +101,14 @@ func (e *Engine) reachOfPush(in *Input) float64 {
 	return in.Hull
 }
 
-// avoid moves away from what is near, the faster the nearer it is. Along a wall
-// that it has on a side it goes on at the same time, slowly, and the push only moves
-// it aside: a push against the way would hold it for ever where a passage is narrow.
+// avoid moves away from what is near, the faster the nearer it is; between two
+// things that stand equally near, not at all. Along a wall that it has on a side it
+// goes on at the same time, slowly, and the push only moves it aside: a push
+// against the way would hold it for ever where a passage is narrow.
 func (e *Engine) avoid(in *Input, m *Mode, top float64) geom.Vec {
 	reach := e.reachOfPush(in)
-	var push geom.Vec
-	if out, ok := e.wayOut(in, reach); ok {
-		push = out.Scale(top * math.Min(1, math.Max(0, (reach-e.see.nearest)/reach)))
-	}
+	push := e.push(in, reach)
+	push = push.Scale(top * math.Min(1, math.Max(0, (reach-e.see.nearest)/reach)))
 	if e.track.side == NoSide {
 		return push
 	}
@@ -125,11 +124,11 @@ func (e *Engine) avoid(in *Input, m *Mode, top float64) geom.Vec {
 // gives the mirrored sum.
 const grain = 1 << 40
 
-// wayOut returns the direction out of the obstacles: the sum over the returns
-// with gap < reach of the unit vectors away from them, weighted (1 − gap/reach)².
-// ok is false when nothing is that near or the sum vanishes.
-func (e *Engine) wayOut(in *Input, reach float64) (dir geom.Vec, ok bool) {
-	var x, y int64
+// push returns the mean, over the returns with gap < reach, of the unit vectors
+// away from them, weighted (1 − gap/reach)²; its length is at most 1, and it is
+// zero when nothing is that near.
+func (e *Engine) push(in *Input, reach float64) geom.Vec {
+	var x, y, total int64
 	s := &e.see
 	for i := range s.points[:s.current] {
 		p := &s.points[i]
@@ -138,13 +137,14 @@ func (e *Engine) wayOut(in *Input, reach float64) (dir geom.Vec, ok bool) {
 			continue
 		}
 		k := math.Min(2, 1-gap/reach)
-		k = k * k / p.rho * grain
+		k *= k * grain
+		total += int64(k)
+		k /= p.rho
 		x -= int64(k * p.v.X)
 		y -= int64(k * p.v.Y)
 	}
-	sum := geom.Vec{X: float64(x), Y: float64(y)}
-	if n := sum.Norm(); n > grain*1e-6 {
-		return sum.Scale(1 / n), true
+	if total == 0 {
+		return geom.Vec{}
 	}
-	return geom.Vec{}, false
+	return geom.Vec{X: float64(x) / float64(total), Y: float64(y) / float64(total)}
 }

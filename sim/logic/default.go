@@ -14,9 +14,28 @@ type Numbers struct {
 	GoalRadius float64 // m
 }
 
-// DefaultNumbers suit the hull radius, speed and goal radius given.
+// DefaultNumbers suit the hull radius (m), speed (m/s) and goal radius (m) given.
+//
+// They grow with the hull, and with the speed where a robot that fast needs more
+// room: Notice must leave room to turn aside before StandOff is used up, Safe room to
+// stop. Gain exceeds Notice, because a robot that leaves a wall for a free way meets the
+// next obstacle as much as Notice before that way ends; only what Gain has beyond Notice
+// is sure progress (see Default). For a hull of 0.21 m at 0.45 m/s they are
+// 0.30, 0.20, 0.08, 0.04 and 0.35 m.
 func DefaultNumbers(hull, speed, goalRadius float64) Numbers {
-	return Numbers{Notice: 0.3, StandOff: 0.2, Safe: 0.08, Band: 0.04, Gain: 0.35, MinTime: 1, GoalRadius: goalRadius}
+	mm := func(x float64) float64 { return math.Round(x*1000) / 1000 }
+	standOff := mm(math.Max(0.953*hull, 0.3*speed))
+	safe := mm(math.Max(0.38*hull, 0.12*speed))
+	notice := mm(standOff + math.Max(0.477*hull, 0.22*speed))
+	return Numbers{
+		Notice:     notice,
+		StandOff:   standOff,
+		Safe:       safe,
+		Band:       safe / 2,
+		Gain:       mm(notice + 0.24*hull),
+		MinTime:    1,
+		GoalRadius: goalRadius,
+	}
 }
 
 // Default returns the default logic as data.
@@ -56,6 +75,6 @@ func Default(n Numbers) *Logic {
 			{From: avoid, To: wall, When: []Condition{atLeast(Nearest, n.Safe+n.Band)}},
 		},
 		Sector: math.Pi / 6,
-		Margin: 0.04,
+		Margin: n.Safe / 2,
 	}
 }

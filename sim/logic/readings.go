@@ -18,7 +18,7 @@ func (e *Engine) read(in *Input) {
 	r[BestDistance] = t.best
 	r[Gain] = t.best - (t.distance - r[FreeWay])
 	r[Alignment] = 1
-	if out, ok := e.wayOut(in, e.reachOfPush(in)); ok {
+	if out := e.push(in, e.reachOfPush(in)).Unit(); out != (geom.Vec{}) {
 		r[Alignment] = out.Dot(t.goalDir)
 	}
 	r[TimeInMode] = in.Time - e.since
