@@ -22,8 +22,10 @@ type Tape struct {
 	view  *Set // where the tape is looked at, when that is not the head
 	spare *Set
 
-	marks  []*Set // snapshots of the head, one every markEvery ticks
+	marks  []*Set // snapshots of the head, one every so many ticks
 	every  int64  // ticks between marks
+	held   int    // by the marks, bytes, about
+	pieces int    // of the floor's solids
 	Record Record
 }
 
@@ -61,7 +63,8 @@ type RowModel struct {
 // GapSight is how far, in metres, the strip of gaps looks.
 const GapSight = 3.0
 
-// Span is a stretch of one mode in a model's lane; it lasts to the next of that model.
+// Span is a stretch of one mode in a model's lane; it lasts to the next of that model. When there are very many, the
+// shortest are left out.
 type Span struct {
 	Who  Who
 	Tick int64
@@ -109,8 +112,11 @@ const (
 	rowEvery  = 0.1 // s between rows
 	markEvery = 5   // s between snapshots: stepping that far is a small part of the 100 ms in which a past tick must be shown
 	maxMarks  = 512
-	maxRows   = 72_000 // two hours at the first spacing
-	maxEvents = 2_000
+	maxHeld   = 192 << 20 // bytes; fewer marks are kept than maxMarks when they are large
+	maxRows   = 72_000    // two hours at the first spacing
+	maxRanges = 12 << 20  // numbers in Ranges; fewer rows are kept than maxRows when a ring has many beams
+	maxSpans  = 20_000
+	maxEvents = 2_000 // besides ends and partings, which are few
 	// Chatter is marked from chatterSwitches switches within chatterWindow seconds (common practice: a mode that
 	// does not last half a second has not done anything).
 	chatterSwitches, chatterWindow = 5, 2.0
@@ -123,6 +129,9 @@ func NewTape(m *floor.Map, c sim.Config, shadows bool) (*Tape, error) {
 		return nil, err
 	}
 	t := &Tape{head: set, every: max(1, int64(math.Round(markEvery/c.Tick)))}
+	for i := range c.Floor.Solids {
+		t.pieces += len(c.Floor.Solids[i].Points)
+	}
 	t.Record.Every = max(1, int64(math.Round(rowEvery/c.Tick)))
 	for w := range Models {
 		t.Record.pending[w].mode = -1
@@ -245,7 +254,7 @@ func (t *Tape) cut() {
 	for _, r := range t.head.runs {
 		r.Forget()
 	}
-	t.marks = t.marks[:t.markBefore(tick)+1]
+	t.keepMarks(func(s *Set) bool { return s.tick <= tick })
 	t.Record.cut(t.head)
 }
 
@@ -325,10 +334,41 @@ func (t *Tape) mark() {
 	s := new(Set)
 	s.CopyFrom(t.head)
 	t.marks = append(t.marks, s)
-	if len(t.marks) > maxMarks {
+	t.held += t.size(s)
+	for len(t.marks) > maxMarks || t.held > maxHeld && len(t.marks) > 2 {
 		t.every *= 2
-		t.marks = slices.DeleteFunc(t.marks, func(s *Set) bool { return s.tick%t.every != 0 })
+		t.keepMarks(func(s *Set) bool { return s.tick%t.every == 0 })
 	}
+}
+
+func (t *Tape) keepMarks(keep func(*Set) bool) {
+	t.held = 0
+	t.marks = slices.DeleteFunc(t.marks, func(s *Set) bool {
+		if !keep(s) {
+			return true
+		}
+		t.held += t.size(s)
+		return false
+	})
+}
+
+// What a snapshot holds, in bytes and about: of each entry of its logs, each ray of its ring, and each piece of a floor
+// on which something was moved.
+const (
+	switchSize, contactSize, editSize = 200, 64, 72
+	raySize, pieceSize, restSize      = 200, 64, 8 << 10
+)
+
+// size returns how much memory a snapshot holds, about.
+func (t *Tape) size(s *Set) int {
+	n := 0
+	for _, r := range s.runs {
+		n += restSize + len(r.Switches())*switchSize + len(r.Contacts())*contactSize + len(r.Edits())*editSize + len(r.Scan().Range)*raySize
+		if slices.ContainsFunc(r.Edits(), func(e sim.Edit) bool { return e.Kind == sim.MoveSolid && e.Tick <= s.tick }) {
+			n += t.pieces * pieceSize
+		}
+	}
+	return n
 }
 
 func (r *Record) noteModel(s *Set, w Who) {
@@ -339,6 +379,9 @@ func (r *Record) noteModel(s *Set, w Who) {
 		}
 		p.mode, p.side = mode, side
 		r.Spans = append(r.Spans, Span{w, s.tick, mode, side})
+		if len(r.Spans) > maxSpans {
+			r.thinSpans()
+		}
 	}
 	o := run.Status()
 	if o != p.status {
@@ -392,13 +435,13 @@ func (p *pending) prune(s *Set) {
 }
 
 func (r *Record) event(k EventKind, w Who, tick int64, text string) {
-	if len(r.Events) < maxEvents {
+	if len(r.Events) < maxEvents || k == EndMark || k == PartingMark {
 		r.Events = append(r.Events, Event{k, w, tick, text})
 	}
 }
 
 func (r *Record) noteRow(s *Set) {
-	if len(r.Rows) >= maxRows {
+	if n := len(r.Rows); n >= maxRows || n*len(s.runs[Robot].Scan().Range) >= maxRanges {
 		r.thin()
 		if s.tick%r.Every != 0 {
 			return
@@ -421,6 +464,36 @@ func (r *Record) noteRow(s *Set) {
 	}
 	r.Rows, r.Ranges = append(r.Rows, row), append(r.Ranges, ranges)
 }
+
+// thinSpans leaves out the shortest stays, until half of all spans are left.
+func (r *Record) thinSpans() {
+	r.Recast++
+	for brief := r.Every; len(r.Spans) > maxSpans/2; brief *= 2 {
+		var next [Models]int64
+		for w := range next {
+			next[w] = math.MaxInt64
+		}
+		for i := len(r.Spans) - 1; i >= 0; i-- {
+			if x := &r.Spans[i]; x.Tick > 0 && next[x.Who]-x.Tick < brief {
+				x.Mode = leftOut
+			} else {
+				next[x.Who] = x.Tick
+			}
+		}
+		var last [Models]*Span // the two of one mode on either side of what was left out become one
+		r.Spans = slices.DeleteFunc(r.Spans, func(x Span) bool {
+			before := last[x.Who]
+			if x.Mode == leftOut || before != nil && before.Mode == x.Mode && before.Side == x.Side {
+				return true
+			}
+			last[x.Who] = &x
+			return false
+		})
+	}
+}
+
+// leftOut is the mode of a span that is to go.
+const leftOut = -1
 
 // thin drops every other row.
 func (r *Record) thin() {

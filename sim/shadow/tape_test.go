@@ -8,7 +8,10 @@ import (
 	"leeway/sim/geom"
 	"leeway/sim/ring"
 	"leeway/sim/shadow"
+	"leeway/sim/steer"
 
+	"github.com/google/go-cmp/cmp"
+	"github.com/google/go-cmp/cmp/cmpopts"
 	"pgregory.net/rapid"
 )
 
@@ -189,5 +192,136 @@ func BenchmarkSeek(b *testing.B) {
 	for b.Loop() {
 		tape.LookAt(7999)
 		tape.LookAt(1)
+	}
+}
+
+// What is recorded does not tell what other futures there have been: random walks over a tape, against a tape on which
+// only the changes that are left were made.
+func TestTheRecordForgetsOtherFutures(t *testing.T) {
+	rapid.Check(t, func(rt *rapid.T) {
+		c := busy()
+		c.Steer.Rule, c.Steer.Ahead = steer.LookAhead, 0.05
+		tape := newTape(t, c, true)
+		for range rapid.IntRange(2, 6).Draw(rt, "acts") {
+			for range rapid.IntRange(0, 1500).Draw(rt, "steps") {
+				tape.Step()
+			}
+			tape.LookAt(rapid.Int64Range(0, tape.Length()).Draw(rt, "to"))
+			e := sim.Edit{Kind: sim.MoveSolid, Index: 1, Pos: v(rapid.Float64Range(5, 9).Draw(rt, "x"), 3)}
+			if rapid.Bool().Draw(rt, "goal") {
+				e = sim.Edit{Kind: sim.MoveGoal, Pos: v(10, rapid.Float64Range(1, 5).Draw(rt, "y"))}
+			}
+			if _, err := tape.Edit(e); err != nil {
+				rt.Fatal(err)
+			}
+		}
+		for range 4000 {
+			tape.Step()
+		}
+		plain := newTape(t, c, true)
+		for _, e := range tape.Now().Run(shadow.Robot).Edits() {
+			for plain.Length() < e.Tick {
+				plain.Step()
+			}
+			if _, err := plain.Edit(e); err != nil {
+				rt.Fatal(err)
+			}
+		}
+		for plain.Length() < tape.Length() {
+			plain.Step()
+		}
+		got, want := &tape.Record, &plain.Record
+		if d := cmp.Diff(want.Rows, got.Rows); d != "" {
+			rt.Errorf("rows: %s", d)
+		}
+		if d := cmp.Diff(want.Spans, got.Spans); d != "" {
+			rt.Errorf("spans: %s", d)
+		}
+		if d := cmp.Diff(want.Events, got.Events); d != "" {
+			rt.Errorf("marks: %s", d)
+		}
+	})
+}
+
+// What was changed at the very tick that is looked at is done already there, and changed again there it stays the last
+// change: nothing later is left.
+func TestAChangeIsSeenAtItsTick(t *testing.T) {
+	tape := newTape(t, busy(), true)
+	for range 700 {
+		tape.Step()
+	}
+	edit := func(p geom.Vec) {
+		t.Helper()
+		if _, err := tape.Edit(sim.Edit{Kind: sim.MoveGoal, Pos: p}); err != nil {
+			t.Fatal(err)
+		}
+	}
+	edit(v(10, 5))
+	for range 300 {
+		tape.Step()
+	}
+	edit(v(10, 1))
+	for tick, want := range map[int64]geom.Vec{699: busy().Goal, 700: v(10, 5), 999: v(10, 5), 1000: v(10, 1)} {
+		tape.LookAt(tick)
+		for w := range shadow.Models {
+			if got := tape.Now().Run(w).Goal(); got != want {
+				t.Errorf("tick %d, %v: the goal is at %v", tick, w, got)
+			}
+		}
+	}
+	tape.LookAt(700)
+	if _, err := tape.Edit(sim.Edit{Kind: sim.MoveSolid, Index: 1, Pos: v(6, 3)}); err != nil {
+		t.Fatal(err)
+	}
+	if e := tape.Now().Run(shadow.Robot).Edits(); len(e) != 2 || e[0].Pos != v(10, 5) || tape.Length() != 700 {
+		t.Errorf("edits %+v, length %d", e, tape.Length())
+	}
+}
+
+// A change that cannot be made changes nothing: no future is forgotten for it.
+func TestARefusedChangeCutsNothing(t *testing.T) {
+	tape := newTape(t, busy(), true)
+	for range 500 {
+		tape.Step()
+	}
+	tape.LookAt(100)
+	if cut, err := tape.Edit(sim.Edit{Kind: sim.MoveSolid, Index: 99}); err == nil || cut || tape.Length() != 500 || tape.AtHead() {
+		t.Errorf("cut %v, error %v, length %d", cut, err, tape.Length())
+	}
+}
+
+// The robot is the same when its shadows are dropped, at any tick of the tape.
+func TestDroppedShadowsLeaveTheRobot(t *testing.T) {
+	tape, alone := newTape(t, busy(), true), newTape(t, busy(), false)
+	for range 2500 {
+		tape.Step()
+		alone.Step()
+	}
+	tape.LookAt(1800)
+	tape.DropShadows()
+	for range 2 {
+		for tape.Length() < 4000 {
+			tape.LookAt(tape.Length())
+			tape.Step()
+		}
+		for alone.Length() < 4000 && !alone.Done() {
+			alone.Step()
+		}
+		for _, at := range []int64{1800, 0, 1001, 2500, 4000} {
+			tape.LookAt(at)
+			alone.LookAt(at)
+			if a, b := tape.Now(), alone.Now(); a.Run(shadow.Robot).Outcome() != b.Run(shadow.Robot).Outcome() || a.Run(shadow.Point) != nil || a.Shadows() {
+				t.Errorf("at %d: %+v, alone %+v", at, a.Run(shadow.Robot).Outcome(), b.Run(shadow.Robot).Outcome())
+			}
+		}
+	}
+	if d := cmp.Diff(alone.Record.Rows, tape.Record.Rows); d != "" {
+		t.Error(d)
+	}
+	if d := cmp.Diff(alone.Record.Spans, tape.Record.Spans); d != "" {
+		t.Error(d)
+	}
+	if d := cmp.Diff(alone.Record.Events, tape.Record.Events, cmpopts.EquateEmpty()); d != "" {
+		t.Error(d)
 	}
 }
