@@ -41,24 +41,34 @@ func (s *Scenario) SetNumber(path string, number float64) error {
 	}
 	was := s.Clone()
 	number += 0 // −0 becomes 0
-	switch v.Kind() {
-	case reflect.Pointer:
-		v.Set(reflect.ValueOf(&number))
-	case reflect.Float64:
-		v.SetFloat(number)
-	default:
-		if number != math.Trunc(number) {
-			return fmt.Errorf("%s must be a whole number; it is %s", path, short(number))
-		}
-		v.SetInt(int64(number))
+	if v.CanInt() && number != math.Trunc(number) {
+		return fmt.Errorf("%s must be a whole number; it is %s", path, short(number))
 	}
+	s.put(path, v, number)
+	return s.accept(was)
+}
+
+// follow changes what goes along with a number that has been set.
+func (s *Scenario) follow(path string) {
 	switch path {
 	case "ring.beams":
 		s.Ring.Bearings = nil
 	case "robot.radius_m":
 		s.Ring.Mount = min(s.Ring.Mount, s.Robot.Radius)
 	}
-	return s.accept(was)
+}
+
+// put writes a number into its place v, unchecked.
+func (s *Scenario) put(path string, v reflect.Value, number float64) {
+	switch v.Kind() {
+	case reflect.Pointer:
+		v.Set(reflect.ValueOf(&number))
+	case reflect.Float64:
+		v.SetFloat(number)
+	default:
+		v.SetInt(int64(number))
+	}
+	s.follow(path)
 }
 
 // ChoiceAt returns a choice by its path.
@@ -152,5 +162,6 @@ func (s *Scenario) Clone() *Scenario {
 	}
 	c.Ideal = slices.Clone(s.Ideal)
 	c.Edits = slices.Clone(s.Edits)
+	c.Vary = s.Vary.clone()
 	return &c
 }

@@ -53,7 +53,7 @@ func agree(t *testing.T, schema *check.Schema, text []byte) bool {
 // with one place changed by both.
 func TestSchemaAgreesWithParser(t *testing.T) {
 	schema := compileSchema(t)
-	texts := [][]byte{[]byte(plain), []byte(everything), []byte(tableLogic)}
+	texts := [][]byte{[]byte(plain), []byte(everything), []byte(tableLogic), []byte(varied)}
 	for _, text := range texts {
 		if !agree(t, schema, text) {
 			t.Errorf("refused:\n%s", text)

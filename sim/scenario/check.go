@@ -30,6 +30,7 @@ func (s *Scenario) check(r *report) {
 	c.places()
 	c.logic()
 	c.edits()
+	c.vary()
 	c.size()
 }
 

@@ -26,12 +26,17 @@ func (s *Scenario) Config() (sim.Config, error) {
 	if p := s.Validate(); p != nil {
 		return sim.Config{}, p
 	}
+	return s.config(s.floorConfig()), nil
+}
+
+// config is Config of a valid scenario on its floor.
+func (s *Scenario) config(f floor.Config) sim.Config {
 	decide, _ := ticks(s.Timing.DecideEvery, s.Timing.Tick)
 	c := sim.Config{
 		Seed:        uint64(s.Seed),
 		Tick:        s.Timing.Tick,
 		DecideEvery: decide,
-		Floor:       s.floorConfig(),
+		Floor:       f,
 		Hull:        s.Robot.Radius,
 		Start:       geom.Pose{Pos: geom.Vec{X: s.Start.X, Y: s.Start.Y}, Theta: radians(s.Start.Heading)},
 		Ring:        s.ringConfig(),
@@ -66,7 +71,7 @@ func (s *Scenario) Config() (sim.Config, error) {
 		}
 		c.Edits = append(c.Edits, f)
 	}
-	return c, nil
+	return c
 }
 
 // floorConfig returns walls, then solids, then the border.

@@ -16,6 +16,9 @@
 //	c, err := s.Config()
 //	run, err := sim.New(c)
 //
+// A scenario may say what differs from trial to trial (vary.go). Trials draws those
+// trials, each of them a plain scenario again.
+//
 // The file is JSON, strictly: duplicate keys, unknown keys, keys in the wrong
 // case and trailing data are faults. Lengths are metres and angles degrees, and
 // each name says so (radius_m, heading_deg). Everything is optional but the version,
@@ -26,8 +29,8 @@
 // format.go declares the file as Go structs; rules.go is the one table of ranges,
 // choices, labels and units. A text becomes a tree with positions (syntax.go), the
 // tree becomes a Scenario (read.go), and the Scenario is checked (check.go,
-// check_floor.go, check_logic.go); positions come from the tree again. print.go is
-// the way back. schema.json is generated from format.go and rules.go by the tests.
+// check_floor.go, check_logic.go, check_vary.go); positions come from the tree again. print.go is
+// the way back; trial.go draws trials. schema.json is generated from format.go and rules.go by the tests.
 //
 // # Caveats
 //

@@ -58,6 +58,8 @@ type Scenario struct {
 	OnContact string `json:"on_contact"`
 	// Edits that people made while the run went on, in order of tick.
 	Edits []Edit `json:"edits"`
+	// Vary says what differs from trial to trial when the scenario is tried many times.
+	Vary Vary `json:"vary,omitempty"`
 }
 
 // Point is a place [x, y] in metres, x to the east and y to the north of the floor's south-west corner.
@@ -313,6 +315,10 @@ type Asked struct {
 	Leeway float64 `json:"leeway_m"`
 	// Most changes of mode; -1 when nothing is asked of them.
 	Switches int `json:"switches"`
+	// Success is the share of trials that must show all this; left out or 0, it is 0.9.
+	Success float64 `json:"success,omitempty"`
+	// Confidence with which that share must be shown; left out or 0, it is 0.95.
+	Confidence float64 `json:"confidence,omitempty"`
 }
 
 // Timing is how the run is cut into ticks.

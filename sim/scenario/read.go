@@ -168,6 +168,7 @@ func (r reader) object(s *spec, n *node, v reflect.Value, p *path) {
 	form, ok := "", true
 	if s.forms != nil {
 		if form, ok = r.shape(s, n, p); !ok {
+			r.distrust(p.String()) // nothing of it has been read
 			return
 		}
 	}
@@ -233,6 +234,21 @@ func (r reader) shape(s *spec, n *node, p *path) (form string, ok bool) {
 			return "default", true
 		}
 		return r.named(s, k, &path{up: p, name: "kind"})
+	case Region:
+		if n.get("radius_m") != nil || n.get("center_m") != nil {
+			return "disc", true
+		}
+		if n.get("from_m") != nil || n.get("to_m") != nil {
+			return "box", true
+		}
+		r.say(p, n, false, "%s needs from_m and to_m, or center_m and radius_m")
+	case Varied:
+		k := n.get("kind")
+		if k == nil {
+			r.say(&path{up: p, name: "kind"}, n, false, "%s is missing")
+			return "", false
+		}
+		return r.named(s, k, &path{up: p, name: "kind"})
 	case Edit:
 		k := n.get("what")
 		if k == nil {
@@ -264,6 +280,10 @@ func describeForm(s *spec, form string) string {
 		return `an edit with "what": ` + strconv.Quote(form)
 	case reflect.TypeFor[Logic]():
 		return `a logic with "kind": ` + strconv.Quote(form)
+	case reflect.TypeFor[Region]():
+		return "a round region (it has center_m or radius_m)"
+	case reflect.TypeFor[Varied]():
+		return `a number with "kind": ` + strconv.Quote(form)
 	case reflect.TypeFor[Mover]():
 		return "a round mover (it has radius_m)"
 	}

@@ -40,6 +40,20 @@ const tableLogic = `{
       {"from": "back", "to": "go", "when": [{"reading": "nearest_m", "relation": "at_least", "threshold": 0.2}], "min_time_s": 0.5, "meet": true}]}
 }`
 
+// varied is a file in which everything that can vary does.
+const varied = `{
+  "leeway": 1, "floor": {"width_m": 12, "height_m": 8, "walls": [{"points_m": [[6, 1], [6, 2]]}],
+    "solids": [{"id": "desk", "corners_m": [[3, 5], [4, 5], [4, 5.6]]}, {"id": "post", "center_m": [8, 4], "radius_m": 0.2}],
+    "movers": [{"id": "cart", "radius_m": 0.25, "route_m": [[5, 7], [9, 7]]}]},
+  "start": {"x_m": 1, "y_m": 1}, "goal": {"x_m": 11, "y_m": 7},
+  "asked": {"success": 0.95, "confidence": 0.9},
+  "vary": {"start": [{"from_m": [0, 0], "to_m": [3, 4]}, {"center_m": [2, 6], "radius_m": 1}], "turn_deg": 180,
+    "goal": [{"from_m": [9, 2], "to_m": [12, 8]}], "margin_m": 0.1, "apart_m": 5,
+    "numbers": [{"path": "robot.speed_m_s", "kind": "uniform", "low": 0.2, "high": 0.6}, {"path": "ring.beams", "kind": "list", "values": [8, 16, 24]},
+      {"path": "robot.wheel_lag_s", "kind": "normal", "mean": 0.1, "deviation": 0.05}, {"path": "logic.notice_m", "kind": "steps", "low": 0.2, "high": 0.5, "step": 0.1}],
+    "solids": [{"id": "desk", "by_m": 0.5}, {"id": "post", "by_m": 0.3}, {"id": "w1", "by_m": 0.25}], "movers": [{"id": "cart", "phase_s": 20}]}
+}`
+
 func shipped(t testing.TB) map[string][]byte {
 	t.Helper()
 	files, err := filepath.Glob("../../scenarios/*.json")
@@ -86,7 +100,7 @@ func checkRoundTrip(t interface {
 }
 
 func TestRoundTrip(t *testing.T) {
-	for _, text := range []string{plain, everything, tableLogic} {
+	for _, text := range []string{plain, everything, tableLogic, varied} {
 		checkRoundTrip(t, []byte(text))
 	}
 	for _, text := range shipped(t) {
@@ -96,7 +110,7 @@ func TestRoundTrip(t *testing.T) {
 
 // TestPrint holds the canonical text of files that use everything, and of one that uses nothing.
 func TestPrint(t *testing.T) {
-	for name, text := range map[string]string{"plain": plain, "everything": everything, "table": tableLogic} {
+	for name, text := range map[string]string{"plain": plain, "everything": everything, "table": tableLogic, "varied": varied} {
 		golden(t, "testdata/"+name+".golden.json", mustParse(t, text).Print())
 	}
 	if lines := bytes.Split(mustParse(t, everything).Print(), []byte("\n")); len(lines) < 40 {
@@ -221,7 +235,7 @@ func FuzzParse(f *testing.F) {
 	for _, text := range shipped(f) {
 		f.Add(text)
 	}
-	for _, text := range []string{plain, everything, tableLogic} {
+	for _, text := range []string{plain, everything, tableLogic, varied} {
 		f.Add([]byte(text))
 	}
 	for _, b := range badFiles(f) {

@@ -78,7 +78,7 @@ const (
 var rules = sync.OnceValue(func() []rule {
 	turn := 360.0
 	sides := []Option{{"better", "the better side"}, {"left", "the left"}, {"right", "the right"}}
-	return []rule{
+	return append([]rule{
 		inside("leeway", "version of the format", "", Version, Version),
 		text("name", "name", maxName, false),
 		text("purpose", "purpose", maxName, false),
@@ -190,6 +190,8 @@ var rules = sync.OnceValue(func() []rule {
 		asked(num("asked.within_s", "time asked", "s", 1, 3600, 5, 0)),
 		asked(num("asked.leeway_m", "leeway asked", "m", 0, 5, 0.01, 2)),
 		asked(num("asked.switches", "switches asked", "", -1, 1e6, 1, 0)),
+		inside("asked.success", "share of trials asked", "", 0, 0.9999),
+		inside("asked.confidence", "confidence asked", "", 0, 0.9999),
 		num("timing.tick_s", "physics step", "s", 0.0005, 0.05, 0.0005, 4),
 		num("timing.decide_every_s", "time between decisions", "s", 0.0005, 1, 0.005, 4),
 		count("ideal", "idealisations", 0, 6),
@@ -204,7 +206,7 @@ var rules = sync.OnceValue(func() []rule {
 		inside("edits[].to_m[]", "coordinate", "m", -maxReach, maxReach),
 		text("edits[].name", "name of the number", maxID, true),
 		inside("edits[].value", "value", "", -1e9, 1e9),
-	}
+	}, varyRules()...)
 })
 
 var ruleAt = sync.OnceValue(func() map[string]*rule {
