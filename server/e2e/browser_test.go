@@ -77,7 +77,6 @@ type tab struct {
 
 	mu       sync.Mutex
 	frame    frame // the last that it received
-	hello    hello // likewise
 	frames   int   // received so far
 	faults   []string
 	expected []*regexp.Regexp
@@ -198,9 +197,9 @@ func (p *tab) received(text []byte, fault func(string, ...any)) {
 			p.frames++
 		}
 	case m.Kind == "hello":
-		var h hello
+		var h struct{ Frame frame }
 		if err = json.Unmarshal(text, &h); err == nil {
-			p.hello, p.frame = h, h.Frame
+			p.frame = h.Frame
 			p.frames++
 		}
 	}

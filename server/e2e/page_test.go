@@ -27,24 +27,6 @@ type frame struct {
 	Hash    string
 }
 
-// hello is the same for the message that says everything.
-type hello struct {
-	Session string
-	Name    string
-	Bounds  [4]float64
-	Start   [3]float64
-	Hull    float64
-	Solids  []struct {
-		ID     string
-		Points [][2]float64
-	}
-	Movers []struct {
-		ID    string
-		Route [][2]float64
-	}
-	Frame frame
-}
-
 // visit goes to an address of the page's server.
 func (p *tab) visit(path string) {
 	p.t.Helper()
@@ -73,13 +55,7 @@ func (p *tab) last() frame {
 	return p.frame
 }
 
-// whole returns the latest hello that the page has received.
-func (p *tab) whole() hello {
-	p.mu.Lock()
-	defer p.mu.Unlock()
-	return p.hello
-}
-
+// seen returns how many frames the page has received.
 func (p *tab) seen() int {
 	p.mu.Lock()
 	defer p.mu.Unlock()
