@@ -80,6 +80,7 @@ func New(c Config) http.Handler {
 		r.With(limit).Post("/api/sessions", s.create)
 		r.Get("/api/sessions/{session}/scenario", s.file)
 		r.Get("/api/sessions/{session}/link", s.link)
+		r.Get("/api/sessions/{session}/beams", s.beams)
 	})
 	return r
 }

@@ -22,6 +22,7 @@ var (
 	errMediaType  = errors.New("the request must be JSON (Content-Type: application/json)")
 	errNoShipped  = errors.New("there is no shipped scenario of that name")
 	errTooMany    = errors.New("that was a lot of sessions in one minute; wait a little and try again")
+	errBadTick    = errors.New("a tick is a whole number from 0 on")
 	errNoPage     = errors.New("there is nothing at this address")
 	errMethod     = errors.New("this address is not asked in that way")
 )
@@ -33,6 +34,7 @@ var statuses = []struct {
 	title  string
 }{
 	{errBadRequest, http.StatusBadRequest, "That request is not understood"},
+	{errBadTick, http.StatusBadRequest, "That request is not understood"},
 	{errNoShipped, http.StatusNotFound, "No such scenario"},
 	{errNoPage, http.StatusNotFound, "Nothing here"},
 	{live.ErrNotFound, http.StatusNotFound, "No such session"},

@@ -5,8 +5,10 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"math"
 	"mime"
 	"net/http"
+	"strconv"
 	"strings"
 	"unicode"
 
@@ -113,6 +115,31 @@ func (s *server) file(w http.ResponseWriter, r *http.Request) {
 	w.Header().Set("Content-Type", "application/json")
 	w.Header().Set("Content-Disposition", mime.FormatMediaType("attachment", map[string]string{"filename": fileName(sc.Name)}))
 	w.Write(sc.Print())
+}
+
+// beams answers with what the ring saw from one tick to another: of the whole
+// tape where a limit is missing.
+func (s *server) beams(w http.ResponseWriter, r *http.Request) {
+	from, to := int64(0), int64(math.MaxInt64-1)
+	for name, at := range map[string]*int64{"from": &from, "to": &to} {
+		text := r.URL.Query().Get(name)
+		if text == "" {
+			continue
+		}
+		tick, err := strconv.ParseInt(text, 10, 64)
+		if err != nil || tick < 0 {
+			s.fail(w, r, errBadTick)
+			return
+		}
+		*at = tick
+	}
+	b, err := s.Lab.Beams(r.Context(), chi.URLParam(r, "session"), from, to)
+	if err != nil {
+		s.fail(w, r, err)
+		return
+	}
+	w.Header().Set("Content-Type", "application/json")
+	w.Write(b.JSON())
 }
 
 // fileName makes a file name of the name of a scenario: "The pocket" → "the-pocket.json".

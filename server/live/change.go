@@ -211,8 +211,8 @@ func (s *Session) edit(e sim.Edit) error {
 		s.playing, s.resume = true, false
 		s.setClock(time.Now())
 	}
-	if s.making != nil {
-		return s.remake(s.source(), s.making.shadows)
+	if s.making != nil { // of another run than this has just become
+		return s.remake(s.withEdits(), s.making.shadows)
 	}
 	return nil
 }
@@ -291,10 +291,7 @@ func (s *Session) setNumber(v *viewer, path string, x float64) {
 // ask changes what is asked. That changes nothing about the run but when it ends:
 // it is run anew with its edits, as far as it had been.
 func (s *Session) ask(v *viewer, path string, set func(*scenario.Scenario) error) {
-	sc, shadows := s.source(), s.shadows
-	if s.making != nil {
-		shadows = s.making.shadows
-	}
+	sc := s.withEdits()
 	if err := set(sc); err != nil {
 		s.refuse(v, path, err)
 		return
@@ -303,7 +300,7 @@ func (s *Session) ask(v *viewer, path string, set func(*scenario.Scenario) error
 		s.refuse(v, path, problems)
 		return
 	}
-	if err := s.remake(sc, shadows); err != nil {
+	if err := s.remake(sc, s.wantsShadows()); err != nil {
 		s.refuse(v, path, err)
 	}
 }

@@ -63,6 +63,8 @@ type Lab struct {
 	conns  sync.WaitGroup // of viewers
 	saver  *saver
 
+	measuring chan struct{} // of capacity 1: held by who works out a shortest way
+
 	mu       sync.Mutex
 	closed   bool
 	sessions map[string]*Session
@@ -76,6 +78,7 @@ func New(o Options) *Lab {
 	l := &Lab{
 		opt: o, ctx: ctx, cancel: cancel,
 		sessions: map[string]*Session{}, loading: map[string]chan struct{}{},
+		measuring: make(chan struct{}, 1),
 	}
 	l.saver = newSaver(o.Keeper, o.Log, l.saveWhole)
 	return l

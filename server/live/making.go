@@ -44,6 +44,15 @@ func (s *Session) lay(sc *scenario.Scenario, shadows bool) (*laid, error) {
 func (s *Session) install(l *laid) {
 	s.sc, s.shadows, s.tape, s.dt, s.onMap, s.floor = l.sc, l.shadows, l.tape, l.dt, l.onMap, l.floor
 	s.making, s.sought = nil, -1
+	s.tapes++
+	s.pieces = 0
+	for i := range l.floor.Solids {
+		if solid := &l.floor.Solids[i]; solid.Kind == floor.Polygon {
+			s.pieces += len(solid.Points)
+		} else {
+			s.pieces += max(1, len(solid.Points)-1)
+		}
+	}
 	s.noteMoved()
 	s.anew = true
 	s.setClock(time.Now())
@@ -66,7 +75,7 @@ func (s *Session) noteMoved() {
 // is shown, and does not go on.
 type making struct {
 	*laid
-	length int64
+	length int64 // of the present one
 }
 
 // slow is how many slices a tape may take that people are not told of.
@@ -79,6 +88,7 @@ func (s *Session) remake(sc *scenario.Scenario, shadows bool) error {
 	if err != nil {
 		return err
 	}
+	s.sc = sc // it differs from the present one in what is asked, no more
 	s.making = &making{l, s.tape.Length()}
 	s.makeOn(time.Now())
 	if m := s.making; m != nil && m.length > slow*m.tape.Length() {
@@ -100,6 +110,7 @@ func (s *Session) makeOn(now time.Time) {
 			return
 		}
 	}
+	s.goWhereSought()
 	tick, atHead := s.tick(), s.tape.AtHead()
 	s.install(m.laid)
 	if atHead {
@@ -113,32 +124,26 @@ func (s *Session) makeOn(now time.Time) {
 	s.saveBy(time.Now())
 }
 
-// source returns the scenario of the tape in the making, or else of the present
-// one, with the edits of the present one.
-func (s *Session) source() *scenario.Scenario {
-	sc := s.sc
+// wantsShadows reports whether shadows are computed, or will be.
+func (s *Session) wantsShadows() bool {
 	if s.making != nil {
-		sc = s.making.sc
+		return s.making.shadows
 	}
-	return sc.WithEdits(s.robot().Edits())
+	return s.shadows
 }
 
-// setShadows has the shadows computed or not.
+// setShadows has the shadows computed, from the start of the tape on, or no longer.
 func (s *Session) setShadows(v *viewer, on bool) {
-	wanted := s.shadows
-	if s.making != nil {
-		wanted = s.making.shadows
-	}
 	switch {
-	case on == wanted:
+	case on == s.wantsShadows():
 	case on || s.making != nil:
-		if err := s.remake(s.source(), on); err != nil {
+		if err := s.remake(s.withEdits(), on); err != nil {
 			s.refuse(v, "shadows", err)
 		}
 	default:
 		s.tape.DropShadows()
 		s.shadows = false
 		s.anew = true
-		s.saveBy(time.Now())
 	}
+	s.saveBy(time.Now())
 }

@@ -51,6 +51,8 @@ type Session struct {
 	dt     float64
 	onMap  *floor.Map // of floor; kept while the floor stays as it is
 	floor  floor.Config
+	pieces int     // of the floor's solids
+	tapes  uint64  // how many there have been
 	moved  []int   // solids that an edit of the tape moves, in order
 	making *making // the tape that is to come in place of this one, or nil
 	sought int64   // where somebody wants to look at the tape; −1: where it is looked at
@@ -75,6 +77,7 @@ type Session struct {
 	shown     frame // the memory of the last frame
 
 	grips map[thing]*grip
+	way   measured
 
 	saveAt   time.Time // zero: all is saved
 	textKept bool      // the store has the text as it is
@@ -155,6 +158,7 @@ func (s *Session) loop(ctx context.Context, kept store.Session) {
 		s.makeOn(now)
 		s.advance(now)
 		s.seekOn(now)
+		s.measure(now)
 		s.tell(now)
 		s.save(now)
 
@@ -180,6 +184,7 @@ func (s *Session) end() {
 	for v := range s.viewers {
 		v.leave()
 	}
+	s.goWhereSought()
 	if !s.saveAt.IsZero() {
 		s.save(s.saveAt)
 	}
@@ -212,6 +217,9 @@ func (s *Session) nextWake(now time.Time) (wake time.Time, ok bool) {
 		sooner(time.Unix(0, s.aloneSince.Load()).Add(s.lab.opt.Idle))
 	} else if s.changed || s.anew {
 		sooner(s.nextFrame)
+	}
+	if !s.way.again.IsZero() {
+		sooner(s.way.again)
 	}
 	switch {
 	case s.making != nil:
@@ -342,7 +350,7 @@ func (s *Session) save(now time.Time) {
 	}
 	s.saveAt = time.Time{}
 	kept := store.Session{
-		ID: s.id, Tick: s.tick(), Length: s.tape.Length(), Shadows: s.shadows, Playing: s.playing || s.resume, Speed: s.speed, ByHand: s.byHand, Updated: now,
+		ID: s.id, Tick: s.tick(), Length: s.tape.Length(), Shadows: s.wantsShadows(), Playing: s.playing || s.resume, Speed: s.speed, ByHand: s.byHand, Updated: now,
 	}
 	if !s.textKept {
 		kept.Scenario = s.canonical()

@@ -1,7 +1,6 @@
 package live
 
 import (
-	"math"
 	"time"
 
 	"leeway/sim"
@@ -128,7 +127,8 @@ func (s *Session) fillFrame(before told) {
 	f.fillShadows(set)
 	f.fillExits(r)
 	f.Verdict.fillModels(set)
-	f.Verdict.Shortest, f.Verdict.ShortestWhy = math.NaN(), "It is being worked out."
+	length, why := s.shortestNow()
+	f.Verdict.Shortest, f.Verdict.ShortestWhy = length, sentence(why)
 	f.Tape.since(before, s.known(), &s.tape.Record, s.models())
 }
 
