@@ -1,7 +1,7 @@
 import assert from 'node:assert/strict';
 import { test } from 'node:test';
-import { spoken, verdict } from '../static/js/core/verdict.js';
-import { frame } from './kit.mjs';
+import { partings, spoken, verdict } from '../static/js/core/verdict.js';
+import { frame, measures } from './kit.mjs';
 
 const asked = { within_s: 90, leeway_m: 0.1, switches: 10 };
 const of = (change, what = asked) => verdict(frame(change), what);
@@ -30,12 +30,53 @@ test('late, restless or not there is short too', () => {
   for (const status of ['timed out', 'struck', 'gave up', 'missed', 'diverged']) assert.equal(short({ status }), true, status);
 });
 
-test('rows carry what is asked, and what breaks it is marked', () => {
-  const rows = Object.fromEntries(of({ time: 95, switches: 10, contacts: 1 }).rows.map((r) => [r.key, r]));
-  assert.deepEqual([plain(rows.time.asked), rows.time.bad], ['90 s', true]);
-  assert.deepEqual([rows.switches.asked, rows.switches.bad], ['10', false]);
-  assert.equal(rows.contacts.bad, true);
-  assert.equal(rows.way.asked, '');
+const three = (robot = {}, point = {}, unicycle = {}, shortest = 10) => ({
+  shortest, models: [measures({ who: 0, ...robot }), measures({ who: 1, ...point }), measures({ who: 2, ...unicycle })],
+});
+const rowsOf = (change, apart = null) =>
+  Object.fromEntries(verdict(frame(change), asked, apart).rows.map((r) => [r.key, r.cells.map((c) => plain(c.text))]));
+
+test('point, unicycle and robot stand side by side', () => {
+  const rows = rowsOf({
+    verdict: three(
+      { status: 'arrived', time: 60.4, leeway: 0.05, way: 19.4, switches: 30, saturated: 0.114, estimate_error: 0.19 },
+      { status: 'arrived', time: 35.6, leeway: 0.29, way: 12.1, switches: 10, largest: 5.14 },
+      { status: 'gave up', time: 83.8, leeway: 0.24, way: 27.1, switches: 10, largest: 3.3 },
+    ),
+  }, 6.9);
+  assert.deepEqual(rows, {
+    time: ['35.6 s', 'gave up', '60.4 s'],
+    leeway: ['0.29 m', '0.24 m', '0.05 m'],
+    way: ['1.21×', '2.71×', '1.94×'],
+    switches: ['10', '10', '30'],
+    farthest: ['–', '6.90 m', '5.14 m'],
+    saturated: ['–', '–', '11 %'],
+    lost: ['–', '–', '0.19 m'],
+  });
+});
+
+test('only the robot is held to what is asked', () => {
+  const same = { status: 'arrived', time: 91, leeway: 0.01, switches: 11 };
+  const v = verdict(frame({ verdict: three(same, same, same) }), asked);
+  const bad = v.rows.filter((r) => r.cells.some((c) => c.bad)).map((r) => [r.key, r.cells.map((c) => c.bad)]);
+  assert.deepEqual(bad, [['time', [false, false, true]], ['leeway', [false, false, true]], ['switches', [false, false, true]]]);
+});
+
+test('without shadows and without a shortest way there is less to say', () => {
+  const rows = rowsOf({ verdict: { shortest: null, shortest_why: 'There is none.', models: [measures({ way: 3.2 })] } });
+  assert.deepEqual([rows.way, rows.farthest, rows.time], [['–', '–', '3.20 m'], ['–', '–', '–'], ['–', '–', '…']]);
+  assert.equal(of({ verdict: { shortest: null, shortest_why: 'There is none.', models: [] } }).shortest, 'There is none.');
+});
+
+test('the time of a robot that has ended stands still', () => {
+  const f = { time: 120, status: 'arrived', leeway: 0.2, verdict: three({ status: 'arrived', time: 60 }) };
+  assert.match(of(f).words, /keeps what is asked/);
+  assert.match(spoken(frame(f), asked), /^The run ended at 1:00\.0/);
+});
+
+test('partings are listed in order, and nothing else is', () => {
+  const mark = (kind, tick) => ({ kind, who: 1, tick, text: '' });
+  assert.deepEqual(partings([mark('parting', 9), mark('contact', 1), mark('parting', 4)]).map((m) => m.tick), [4, 9]);
 });
 
 test('nothing asked, nothing near: no judgement on the leeway', () => {
@@ -44,7 +85,6 @@ test('nothing asked, nothing near: no judgement on the leeway', () => {
   assert.equal(v.words, 'of leeway. So far it holds.');
   assert.equal(of({ leeway: null }).mark, 'none');
   assert.equal(of({ leeway: null }).leeway, '–');
-  assert.ok(verdict(frame(), {}).rows.every((r) => r.asked === ''));
 });
 
 test('the end of a run is read out', () => {

@@ -32,7 +32,6 @@ func pages() map[string]templ.Component {
 	return map[string]templ.Component{
 		"start": Start(StartView{
 			Cards:    []Card{{Key: hostile, Name: hostile, Purpose: hostile, Drawing: drawing, Outcome: hostile, Short: true}, {Key: "plain"}},
-			Recent:   []Recent{{URL: "javascript:alert(1)", Name: hostile, Note: hostile}},
 			Accepted: hostile,
 		}),
 		"bench": Bench(BenchView{

@@ -4,9 +4,8 @@ import "github.com/a-h/templ"
 
 // StartView is the start page: what there is to open.
 type StartView struct {
-	Cards    []Card   // shipped scenarios, in the order shown
-	Recent   []Recent // sessions that are still there, newest first; may be empty
-	Accepted string   // the largest file accepted, in words: "4 MB"; empty: not said
+	Cards    []Card // shipped scenarios, in the order shown
+	Accepted string // the largest file accepted, in words: "4 MB"; empty: not said
 }
 
 // Card is a shipped scenario.
@@ -17,13 +16,6 @@ type Card struct {
 	Drawing templ.Component // the floor with the way of a finished run, an svg; nil: none
 	Outcome string          // how that run went: "arrived after 0:41, 0.07 m of leeway"; may be empty
 	Short   bool            // that run fell short of what is asked
-}
-
-// Recent is a session that is still there.
-type Recent struct {
-	URL  string
-	Name string
-	Note string // "running at 1:20, 2 watching"
 }
 
 // BenchView is the bench: one live session.

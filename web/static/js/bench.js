@@ -4,17 +4,21 @@
 import { clock } from './core/format.js';
 import { sessionOf } from './core/link.js';
 import { hello as asHello } from './core/protocol.js';
+import { nextTo } from './core/marks.js';
+import { shown } from './core/seek.js';
 import { initial, step } from './core/state.js';
 import { spoken } from './core/verdict.js';
 import { byId, say, set } from './dom.js';
 import { Floor } from './floor/floor.js';
 import { Live } from './live.js';
 import { open } from './sessions.js';
+import { Advice } from './ui/advice.js';
 import { Banner } from './ui/banner.js';
 import { Brief } from './ui/brief.js';
 import { intake } from './ui/intake.js';
 import { share } from './ui/share.js';
 import { Strip } from './ui/strip.js';
+import { TapeView } from './ui/tape.js';
 import { shortcut, Transport } from './ui/transport.js';
 import { Verdict } from './ui/verdict.js';
 import { Why } from './ui/why.js';
@@ -28,6 +32,8 @@ let state = initial();
 let drawing = 0;
 /** @type {{command: Command & {kind: 'drag'}, sent: boolean} | null} What the hand does; sent once a frame at most. */
 let drag = null;
+/** The tick to look at, when it has not been sent yet; once a frame at most. @type {number | null} */
+let wanted = null;
 /** @type {number | null} The speed to ask for when a run is taken up again. */
 let speed = null;
 let takingUp = false;
@@ -70,11 +76,15 @@ const brief = new Brief(byId('brief', HTMLElement), {
   number: (path, value) => live.send({ kind: 'number', path, value }),
   choice: (path, value) => live.send({ kind: 'choice', path, value }),
 });
-const transport = new Transport(byId('transport', HTMLElement), (command) => {
+const transport = new Transport(byId('transport', HTMLElement), byId('legend', HTMLElement), (command) => {
   if (!live.send(command)) strip.show('Not done: the connection is lost.', true);
 });
 const banner = new Banner(byId('banner', HTMLElement), () => live.retry());
-const cards = [new Why(byId('why', HTMLElement)), new Verdict(byId('verdict', HTMLElement)), transport, brief];
+const tape = new TapeView(byId('tape', HTMLElement), { seek, redraw: schedule });
+const cards = [
+  new Why(byId('why', HTMLElement)), new Verdict(byId('verdict', HTMLElement), (tick) => seek(tick)),
+  transport, tape, brief, new Advice(byId('advice', HTMLElement)),
+];
 
 /**
  * @param {Event} event
@@ -88,18 +98,37 @@ function dispatch(event) {
   return state;
 }
 
+/**
+ * Looks at another moment.
+ * @param {number} tick
+ * @param {boolean} [live] a hand holds on to it
+ */
+function seek(tick, live = false) {
+  if (state.link !== 'live') {
+    strip.show('Not done: the connection is lost.', true);
+    return;
+  }
+  dispatch({ type: 'seek', tick, live });
+  if (state.seek) wanted = state.seek.tick;
+}
+
 function schedule() {
   if (!drawing) drawing = requestAnimationFrame(draw);
 }
 
 function draw() {
   drawing = 0;
+  if (wanted !== null) {
+    live.send({ kind: 'seek', tick: wanted });
+    wanted = null;
+  }
   if (drag && !drag.sent) {
     drag.sent = true;
     live.send(drag.command);
   }
-  floor.draw(state);
-  for (const card of cards) card.draw(state);
+  const now = shown(state);
+  floor.draw(now);
+  for (const card of cards) card.draw(now);
   head();
   speak();
 }
@@ -173,8 +202,22 @@ function keys() {
     const does = everywhere.checked ? shortcut(event) : null;
     if (!does) return;
     event.preventDefault();
-    if (!event.repeat || does === 'tick') transport.do(does);
+    if (does === 'mark before' || does === 'mark after') toMark(does === 'mark after' ? 1 : -1);
+    else if (!event.repeat || does === 'tick' || does === 'back') transport.do(does);
   });
+}
+
+/** @param {1 | -1} way */
+function toMark(way) {
+  const now = state.seek?.tick ?? state.frame?.tick ?? 0;
+  const tick = nextTo(state.tape.marks, now, way);
+  if (tick === null) {
+    strip.announce(way > 0 ? 'No mark after this moment' : 'No mark before this moment');
+    return;
+  }
+  seek(tick);
+  const words = state.tape.marks.filter((m) => m.tick === tick).map((m) => m.text).join(' ');
+  strip.announce(`${clock(tick * (state.hello?.tick_s ?? 0))}. ${words}`);
 }
 
 /** Under this name the browser keeps whether single keys do something; it may refuse to keep anything. */

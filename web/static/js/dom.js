@@ -23,6 +23,25 @@ export function set(element, name, value) {
   else element.setAttribute(name, text);
 }
 
+/** @type {WeakMap<Element, Record<string, string>>} */
+const varied = new WeakMap();
+
+/**
+ * Sets a property of the element's own style unless it has that value already. It
+ * goes through the style object, which a page may use that allows no style
+ * attributes.
+ * @param {HTMLElement} element
+ * @param {string} property
+ * @param {string} value
+ */
+export function vary(element, property, value) {
+  let known = varied.get(element);
+  if (!known) varied.set(element, (known = {}));
+  if (known[property] === value) return;
+  known[property] = value;
+  element.style.setProperty(property, value);
+}
+
 /** @type {WeakMap<Element, string>} */
 const texts = new WeakMap();
 

@@ -4,7 +4,61 @@
 
 /** @typedef {[number, number]} Point */
 /** @typedef {[number, number, number]} Pose x, y in metres, heading in radians */
-/** @typedef {[number, number, number]} TrailPoint x, y in metres, index of the mode */
+
+/** A model: 0 the robot, 1 the point, 2 the unicycle. @typedef {0 | 1 | 2} Who */
+
+/**
+ * One moment of the tape, flat; core/tape.js says what stands where.
+ * @typedef {number[]} Row
+ */
+
+/** @typedef {[Who, number, number, number]} Span who, tick, mode, side: it lasts to the next of the same model */
+
+/** @typedef {'contact' | 'parting' | 'chatter' | 'ceiling' | 'end'} MarkKind */
+
+/** @typedef {{kind: MarkKind, who: Who, tick: number, text: string}} Mark */
+
+/** The whole tape so far. @typedef {{every: number, length: number, rows: Row[], spans: Span[], marks: Mark[]}} TapeWhole */
+
+/**
+ * What has come to the tape, and the number of the first of each.
+ * @typedef {{from: number, rows: Row[], spans_from: number, spans: Span[], marks_from: number, marks: Mark[]}} TapeMore
+ */
+
+/** A shadow now. @typedef {{pose: Pose, mode: number, side: -1 | 0 | 1, status: string, gap: number | null}} Shadow */
+
+/**
+ * One condition of an exit. Share, mark and release are places on a scale from 0 to 1.
+ * @typedef {{label: string, text: string, met: boolean, share: number, mark: number, release: number}} Gauge
+ */
+
+/**
+ * A way out of the mode: when all gauges are met, and have been for hold seconds.
+ * @typedef {{to: number, name: string, hold: number, held: number, gauges: Gauge[]}} Exit
+ */
+
+/**
+ * What is known of one model up to now. Of the shadows, the distances are those from the robot.
+ * @typedef {object} Measures
+ * @property {Who} who
+ * @property {string} status
+ * @property {number} time s
+ * @property {number | null} leeway
+ * @property {number} way m
+ * @property {number} switches
+ * @property {number} contacts
+ * @property {number} saturated share of the time
+ * @property {number} estimate_error m
+ * @property {number} largest m
+ * @property {number} largest_at s
+ * @property {number} rms m
+ * @property {string} parting the first, in words; empty: none
+ * @property {number} parting_tick
+ */
+
+/** Shortest: the shortest way, m; null where there is none or none is known, and then why. @typedef {{shortest: number | null, shortest_why?: string, models: Measures[]}} Measured */
+
+/** Where the simple model is exact, and whether these numbers keep to it. @typedef {{about: string, holds: boolean, text: string}} Advice */
 
 /**
  * How a mode looks.
@@ -85,8 +139,12 @@
  * @property {string} status
  * @property {string} [reason]
  * @property {string} [hash]
- * @property {number} trail_from
- * @property {TrailPoint[]} trail
+ * @property {number} length of the tape, ticks
+ * @property {boolean} at_head nothing is known beyond now
+ * @property {Shadow[]} shadows point and unicycle; empty when there are none
+ * @property {Exit[]} exits
+ * @property {Measured} verdict
+ * @property {TapeMore} tape
  */
 
 /**
@@ -117,7 +175,11 @@
  * @property {Mover[]} movers
  * @property {Part[]} brief
  * @property {Asked} asked
- * @property {TrailPoint[]} trail
+ * @property {boolean} shadows they are computed
+ * @property {Advice[]} advice
+ * @property {TapeWhole} tape
+ * @property {number | null} ceiling m/s below which no heading asks too much of a wheel
+ * @property {number | null} wheel_max rad/s
  * @property {Frame} frame
  */
 
@@ -134,7 +196,9 @@
 /**
  * A message to the server.
  * @typedef {{kind: 'drag', what: What, id?: string, x: number, y: number, done: boolean}
- *   | {kind: 'play' | 'pause' | 'tick' | 'restart' | 'resync'}
+ *   | {kind: 'play' | 'pause' | 'tick' | 'back' | 'restart' | 'resync'}
+ *   | {kind: 'seek', tick: number}
+ *   | {kind: 'shadows', on: boolean}
  *   | {kind: 'speed', value: number}
  *   | {kind: 'number', path: string, value: number}
  *   | {kind: 'choice', path: string, value: string}} Command
@@ -181,7 +245,14 @@ export function hello(m) {
     movers: (m.movers ?? []).map((/** @type {any} */ v) => ({ ...v, route: v.route ?? [] })),
     brief: m.brief ?? [],
     asked: asked(m.asked ?? {}),
-    trail: m.trail ?? [],
+    shadows: m.shadows ?? false,
+    advice: m.advice ?? [],
+    tape: {
+      every: m.tape?.every || 1, length: m.tape?.length ?? 0,
+      rows: m.tape?.rows ?? [], spans: m.tape?.spans ?? [], marks: m.tape?.marks ?? [],
+    },
+    ceiling: m.ceiling ?? null,
+    wheel_max: m.wheel_max ?? null,
     frame: frame(m.frame ?? {}),
   };
 }
@@ -211,8 +282,16 @@ function frame(m) {
     hits: m.hits ?? '',
     movers: m.movers ?? [],
     moved: m.moved ?? [],
-    trail: m.trail ?? [],
-    trail_from: m.trail_from ?? 0,
+    length: m.length ?? m.tick ?? 0,
+    at_head: m.at_head ?? true,
+    shadows: m.shadows ?? [],
+    exits: (m.exits ?? []).map((/** @type {any} */ x) => ({ ...x, gauges: x.gauges ?? [] })),
+    verdict: { ...m.verdict, shortest: m.verdict?.shortest ?? null, models: m.verdict?.models ?? [] },
+    tape: {
+      from: m.tape?.from ?? 0, rows: m.tape?.rows ?? [],
+      spans_from: m.tape?.spans_from ?? 0, spans: m.tape?.spans ?? [],
+      marks_from: m.tape?.marks_from ?? 0, marks: m.tape?.marks ?? [],
+    },
     status: m.status ?? 'running',
     why: m.why ?? '',
   };

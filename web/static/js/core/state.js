@@ -1,9 +1,10 @@
 // State: everything the bench knows, and what each message, each change of the
 // connection and each hand does to it. A state is a value; step returns the next
-// one together with what there is to do. The trail alone is one object that
-// grows, since it may hold tens of thousands of points.
+// one together with what there is to do. The tape alone is one object that
+// grows, since it may hold tens of thousands of rows.
 
-import { Trail } from './trail.js';
+import * as seeking from './seek.js';
+import { Tape } from './tape.js';
 import { keyOf, thingsOf } from './things.js';
 
 /** @typedef {import('./protocol.js').Hello} Hello */
@@ -27,7 +28,9 @@ import { keyOf, thingsOf } from './things.js';
  * @property {Hello | null} hello
  * @property {Frame | null} frame
  * @property {Thing[]} things
- * @property {Trail} trail
+ * @property {Tape} tape
+ * @property {import('./tape.js').Old | null} old the future that the latest change gave up
+ * @property {seeking.Seek | null} seek the moment that is being looked for
  * @property {Held | null} held
  * @property {Point | null} taken centre of the held mover when it was taken
  * @property {boolean} resyncing a whole picture has been asked for
@@ -41,6 +44,7 @@ import { keyOf, thingsOf } from './things.js';
  *   | {type: 'hold', key: string, anchor: Point}
  *   | {type: 'release'}
  *   | {type: 'let go'}
+ *   | {type: 'seek', tick: number, live: boolean}
  *   | {type: 'say', text: string}} Event
  */
 
@@ -50,7 +54,7 @@ import { keyOf, thingsOf } from './things.js';
 export function initial() {
   return {
     link: 'connecting', linkText: '', retryAt: 0,
-    hello: null, frame: null, things: [], trail: new Trail(),
+    hello: null, frame: null, things: [], tape: new Tape(), old: null, seek: null,
     held: null, taken: null, resyncing: false, problem: null, notice: null,
   };
 }
@@ -65,13 +69,15 @@ export function step(s, e) {
     case 'message':
       return message(s, e.message);
     case 'link':
-      return only({ ...s, link: e.link, retryAt: e.retryAt ?? 0, linkText: '', resyncing: false });
+      return only({ ...s, link: e.link, retryAt: e.retryAt ?? 0, linkText: '', resyncing: false, seek: null });
     case 'hold':
       return only({ ...s, held: { key: e.key, anchor: e.anchor, live: true }, taken: takenFor(s, e.key) });
     case 'release':
       return only(s.held ? { ...s, held: { ...s.held, live: false } } : s);
     case 'let go':
       return only({ ...s, held: null, taken: null });
+    case 'seek':
+      return only(s.hello ? { ...s, seek: seeking.to(e.tick, s.tape.length, e.live) } : s);
     case 'say':
       return only({ ...s, notice: next(s.notice, { text: e.text }) });
   }
@@ -84,19 +90,21 @@ export function step(s, e) {
 function message(s, m) {
   switch (m.kind) {
     case 'hello': {
-      s.trail.reset(m.trail);
+      const old = givenUp(s, m);
+      s.tape.reset(m.tape);
       // What the hand still holds stays in the hand; what it let go of is where
       // the server says.
       const held = s.held?.live ? s.held : null;
       const taken = held ? s.taken : null;
-      return only({ ...s, link: 'live', hello: m, frame: m.frame, things: thingsOf(m), held, taken, resyncing: false });
+      return only({ ...s, link: 'live', hello: m, frame: m.frame, things: thingsOf(m), held, taken, old, seek: null, resyncing: false });
     }
     case 'frame': {
       if (!s.hello) return only(s);
-      if (!s.trail.append(m.trail_from, m.trail) && !s.resyncing) {
-        return { state: { ...s, frame: m, resyncing: true }, effects: /** @type {Effect[]} */ (['resync']) };
+      const seek = seeking.answered(s.seek, m);
+      if (!s.tape.append(m.tape, m.length) && !s.resyncing) {
+        return { state: { ...s, frame: m, seek, resyncing: true }, effects: /** @type {Effect[]} */ (['resync']) };
       }
-      return only({ ...s, frame: m });
+      return only({ ...s, frame: m, seek });
     }
     case 'problem': {
       // A place that cannot be: the thing goes back to where it was.
@@ -109,6 +117,19 @@ function message(s, m) {
     case 'ended':
       return only({ ...s, link: 'ended', linkText: m.text });
   }
+}
+
+/**
+ * The future that a change has given up is kept until the next change: that is a
+ * message with a whole picture which was not asked for, and which is not the end
+ * of the same drag.
+ * @param {State} s
+ * @param {Hello} m
+ */
+function givenUp(s, m) {
+  if (s.frame && s.hello?.session === m.session && s.tape.isCutTo(m.tape)) return s.tape.beyond(m.tape.length);
+  if (!s.old || !s.tape.goesOnAs(m.tape)) return null;
+  return s.resyncing || s.held || m.frame.tick === s.old.tick ? s.old : null;
 }
 
 /**

@@ -13,8 +13,9 @@ import { Handles } from './handles.js';
 import { Movers } from './movers.js';
 import { Pins } from './pins.js';
 import { Robot } from './robot.js';
+import { Shades } from './shades.js';
 import { Solids } from './solids.js';
-import { Trail } from './trail.js';
+import { Ways } from './ways.js';
 
 /** @typedef {import('../core/state.js').State} State */
 /** @typedef {import('../core/things.js').Thing} Thing */
@@ -42,7 +43,8 @@ export class Floor {
   #ground = new Ground();
   #solids = new Solids();
   #movers = new Movers();
-  #trail = new Trail();
+  #ways = new Ways();
+  #shades = new Shades();
   #beams = new Beams();
   #robot = new Robot();
   #pins = new Pins();
@@ -72,8 +74,8 @@ export class Floor {
     this.#readout = readout;
     this.#told = told;
     this.#world = svg('g', { class: 'world' },
-      this.#movers.routes, this.#trail.layer, this.#solids.layer, this.#movers.layer,
-      this.#beams.layer, this.#robot.belief, this.#robot.layer, this.#beams.echoes);
+      this.#movers.routes, this.#ways.layer, this.#solids.layer, this.#movers.layer,
+      this.#beams.layer, this.#shades.layer, this.#robot.belief, this.#robot.layer, this.#beams.echoes);
     surface.append(this.#ground.under, this.#pins.marks, this.#world, this.#pins.words, this.#pins.closest, this.#ground.over, this.#handles.layer);
     new ResizeObserver(() => this.#resized()).observe(surface);
     this.#listen();
@@ -93,8 +95,10 @@ export class Floor {
     this.#ground.draw(c, hello.bounds);
     this.#solids.draw(places);
     this.#movers.draw(places);
-    this.#trail.draw(state.trail, hello.modes);
     const robot = this.#anchor('robot', places);
+    const at = [robot, ...[0, 1].map((i) => /** @type {Point | null} */ (frame.shadows[i]?.pose.slice(0, 2) ?? null))];
+    this.#ways.draw(state.tape.ways, frame.tick, at, hello.modes, state.old);
+    this.#shades.draw(hello, frame.shadows);
     this.#beams.draw(hello, frame, robot);
     this.#robot.draw(hello, frame, robot);
     this.#pins.draw(c, hello, frame, this.#anchor('start', places), this.#anchor('goal', places));
