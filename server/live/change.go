@@ -31,18 +31,9 @@ func (s *Session) receive(v *viewer, m *message) {
 	case "pause":
 		s.pause()
 	case "tick":
-		s.pause()
-		if !s.tape.AtHead() {
-			s.lookAt(s.tick() + 1)
-		} else if !s.step() {
-			v.putNote(notice("the run has ended; restart it to see it again"))
-		}
+		s.forth(v)
 	case "back":
-		s.pause()
-		if s.tick() == 0 {
-			v.putNote(notice("this is where the run starts"))
-		}
-		s.lookAt(s.tick() - 1)
+		s.back(v)
 	case "shadows":
 		s.setShadows(v, *m.On)
 	case "restart":
@@ -83,35 +74,6 @@ func (s *Session) pause() {
 	s.playing, s.resume = false, false
 	s.changed = true
 	s.saveBy(time.Now())
-}
-
-// seek has the tape looked at elsewhere, as soon as it is time for a frame: of
-// what a hand that draws along the tape asks for, only the newest is worked out.
-func (s *Session) seek(tick int64) {
-	s.playing, s.resume = false, false
-	s.sought = min(max(tick, 0), s.tape.Length())
-	s.changed = true
-	s.saveBy(time.Now().Add(saveSoon))
-}
-
-// seekOn goes where somebody wants to look when it is time for a frame, or nobody
-// waits for one.
-func (s *Session) seekOn(now time.Time) {
-	if len(s.viewers) == 0 || !now.Before(s.nextFrame) {
-		s.goWhereSought()
-	}
-}
-
-// goWhereSought looks at the tape where it was last sought.
-func (s *Session) goWhereSought() {
-	if s.sought < 0 {
-		return
-	}
-	s.lookAt(s.sought)
-	s.sought = -1
-	for _, g := range s.grips {
-		g.last = longAgo
-	}
 }
 
 // The speeds: times real time.
@@ -195,9 +157,13 @@ func (s *Session) edit(e sim.Edit) error {
 	if s.fullOfEdits() {
 		return errors.New(fullOfEdits)
 	}
+	told := s.era == s.eraNow()
 	cut, err := s.tape.Edit(e)
 	if err != nil {
 		return err
+	}
+	if told { // whoever makes this change sees to it that it is told
+		s.era = s.eraNow()
 	}
 	if cut {
 		s.note(notice(fmt.Sprintf("changed at %s: what had come after is another future now", shadow.Clock(float64(s.tick())*s.dt))))

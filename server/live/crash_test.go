@@ -21,7 +21,7 @@ func TestAnythingDoneAndAnyCrashLeavesARunThatItsFileGivesAgain(t *testing.T) {
 			v := b.join()
 			somewhere := func() string { return fmt.Sprintf(`"x":%.4f,"y":%.4f`, r.Float64()*8, r.Float64()*6) }
 			for range 120 {
-				switch r.IntN(12) {
+				switch r.IntN(16) {
 				case 0:
 					b.say(v, `{"kind":"pause"}`)
 				case 1, 2:
@@ -46,6 +46,17 @@ func TestAnythingDoneAndAnyCrashLeavesARunThatItsFileGivesAgain(t *testing.T) {
 					if r.IntN(4) == 0 {
 						b.say(v, `{"kind":"restart"}`)
 					}
+				case 12, 13:
+					for range 1 + r.IntN(5) {
+						b.say(v, fmt.Sprintf(`{"kind":"seek","tick":%d}`, r.Int64N(b.length()+50)))
+						time.Sleep(time.Duration(r.IntN(40)) * time.Millisecond)
+					}
+				case 14:
+					for range 1 + r.IntN(4) {
+						b.say(v, `{"kind":"back"}`)
+					}
+				case 15:
+					b.say(v, fmt.Sprintf(`{"kind":"shadows","on":%t}`, r.IntN(2) == 0))
 				case 9: // the server is killed, and another one takes over what the disk has
 					if r.IntN(2) == 0 {
 						time.Sleep(time.Duration(r.IntN(3000)) * time.Millisecond)

@@ -134,9 +134,6 @@ func (f *frame) append(b []byte) []byte {
 	b = f.Verdict.append(b)
 	b = append(b, `,"tape":`...)
 	b = f.Tape.append(b)
-	b = appendCount(b, "trail_from", f.Tape.From)
-	b = append(b, `,"trail":`...)
-	b = appendTrail(b, f.Tape.Rows)
 	return append(b, '}')
 }
 

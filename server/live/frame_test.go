@@ -53,8 +53,6 @@ type heard struct {
 	Exits     []exitHeard   `json:"exits"`
 	Verdict   verdictHeard  `json:"verdict"`
 	Tape      tapeHeard     `json:"tape"`
-	TrailFrom int           `json:"trail_from"`
-	Trail     [][3]float64  `json:"trail"`
 }
 
 type shadowHeard struct {
@@ -175,7 +173,6 @@ func expect(f *frame) heard {
 			From: f.Tape.From, Rows: [][]float64{}, SpansFrom: f.Tape.SpansFrom, Spans: [][4]int64{},
 			MarksFrom: f.Tape.MarksFrom, Marks: []markHeard{},
 		},
-		TrailFrom: f.Tape.From, Trail: [][3]float64{},
 	}
 	for i := range 3 {
 		h.Pose[i], h.Belief[i] = near(f.Pose[i]), near(f.Belief[i])
@@ -222,8 +219,6 @@ func expect(f *frame) heard {
 	for i := range f.Tape.Rows {
 		row := &f.Tape.Rows[i]
 		h.Tape.Rows = append(h.Tape.Rows, expectRow(row, f.Tape.Models))
-		m := &row.Models[shadow.Robot]
-		h.Trail = append(h.Trail, [3]float64{near(m.Pose.Pos.X), near(m.Pose.Pos.Y), float64(m.Mode)})
 	}
 	for _, x := range f.Tape.Spans {
 		h.Tape.Spans = append(h.Tape.Spans, [4]int64{int64(x.Who), x.Tick, int64(x.Mode), int64(x.Side)})
@@ -388,8 +383,7 @@ func TestFrameGolden(t *testing.T) {
 		`"verdict":{"shortest":null,"shortest_why":"No way.","models":[{"who":1,"status":"arrived","time":2,"leeway":0.1,"way":3,"switches":4,"contacts":5,"saturated":0.6,` +
 		`"estimate_error":0,"largest":7,"largest_at":8,"rms":9,"parting":"At 0:01.0 …","parting_tick":200}]},` +
 		`"tape":{"from":10,"rows":[[200,1,4,0.5,0,1,0.25,1,2,3,0.4,0,0.39,-0.1,7,8,9,10,2,4,0.5,1,1,0.25,0,3,4,0.5,2,1,0.25,1]],` +
-		`"spans_from":4,"spans":[[2,199,1,-1]],"marks_from":2,"marks":[{"kind":"parting","who":1,"tick":200,"text":"At 0:01.0 …"}]},` +
-		`"trail_from":10,"trail":[[1,4,0]]}`
+		`"spans_from":4,"spans":[[2,199,1,-1]],"marks_from":2,"marks":[{"kind":"parting","who":1,"tick":200,"text":"At 0:01.0 …"}]}}`
 	if d := cmp.Diff(want, string(f.append(nil))); d != "" {
 		t.Error(d)
 	}

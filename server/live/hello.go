@@ -48,7 +48,6 @@ type hello struct {
 
 	// Written by hand, see record.go and frame.go.
 	Tape  json.RawMessage `json:"tape"`
-	Trail json.RawMessage `json:"trail"`
 	Frame json.RawMessage `json:"frame"`
 }
 
@@ -139,7 +138,6 @@ func (s *Session) hello() []byte {
 	var whole additions
 	whole.since(told{every: all.every}, all, &s.tape.Record, s.models())
 	h.Tape = whole.appendWhole(nil, all.every, s.tape.Length())
-	h.Trail = appendTrail(nil, whole.Rows)
 	s.fillFrame(all)
 	s.shown.Moved = s.shown.Moved[:0] // the solids above are where they are now
 	h.Frame = s.shown.append(nil)

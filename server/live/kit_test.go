@@ -111,6 +111,11 @@ func (b *bench) tick() (tick int64) {
 	return tick
 }
 
+func (b *bench) length() (length int64) {
+	b.in(func() { length = b.s.tape.Length() })
+	return length
+}
+
 func (b *bench) outcome() (o sim.Outcome) {
 	b.in(func() { o = b.s.robot().Outcome() })
 	return o
@@ -170,9 +175,8 @@ func last(t testing.TB, messages [][]byte, kind string) []byte {
 // greeting is a hello as a client reads it.
 type greeting struct {
 	hello
-	Tape  tapeHeard    `json:"tape"`
-	Trail [][3]float64 `json:"trail"`
-	Frame heard        `json:"frame"`
+	Tape  tapeHeard `json:"tape"`
+	Frame heard     `json:"frame"`
 }
 
 func greet(t testing.TB, b []byte) greeting {
@@ -230,15 +234,17 @@ func finish(t testing.TB, text []byte) sim.Outcome {
 	return r.Finish()
 }
 
-// untilEnded plays as fast as it goes and waits for the end of the run. Real time
-// or that of a bubble.
+// untilEnded plays as fast as it goes and waits until all models have ended. Real
+// time or that of a bubble.
 func (b *bench) untilEnded(v *viewer) sim.Outcome {
 	b.t.Helper()
 	b.say(v, `{"kind":"speed","value":0}`)
 	b.say(v, `{"kind":"play"}`)
 	for range 10_000 {
-		if o := b.outcome(); o.Status != sim.Running {
-			return o
+		done := false
+		b.in(func() { done = b.s.tape.Done() })
+		if done {
+			return b.outcome()
 		}
 		time.Sleep(time.Millisecond)
 	}

@@ -176,22 +176,3 @@ func appendMarks(b []byte, marks []shadow.Event) []byte {
 	}
 	return append(b, ']')
 }
-
-// appendTrail writes the robot's way with its modes.
-func appendTrail(b []byte, rows []shadow.Row) []byte {
-	b = append(b, '[')
-	for i := range rows {
-		m := &rows[i].Models[shadow.Robot]
-		if i > 0 {
-			b = append(b, ',')
-		}
-		b = append(b, '[')
-		b = appendNumber(b, m.Pose.Pos.X)
-		b = append(b, ',')
-		b = appendNumber(b, m.Pose.Pos.Y)
-		b = append(b, ',')
-		b = strconv.AppendInt(b, int64(m.Mode), 10)
-		b = append(b, ']')
-	}
-	return append(b, ']')
-}

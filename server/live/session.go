@@ -305,12 +305,6 @@ func (s *Session) step() bool {
 	return true
 }
 
-// lookAt looks at a tick of the tape, or at its end.
-func (s *Session) lookAt(tick int64) {
-	s.tape.LookAt(tick)
-	s.changed = true
-}
-
 // stepTo computes the tape of a session that was kept, and looks at where it was
 // looked at.
 func (s *Session) stepTo(ctx context.Context, kept store.Session) {

@@ -7,6 +7,8 @@ import (
 	"testing"
 	"testing/synctest"
 	"time"
+
+	"github.com/google/go-cmp/cmp"
 )
 
 // settle lets frames that are due go out.
@@ -47,8 +49,8 @@ func TestHelloSaysEverything(t *testing.T) {
 		if g.File != string(b.text()) {
 			t.Error("the file is another")
 		}
-		if len(g.Trail) < 2 || g.Frame.TrailFrom != len(g.Trail) || len(g.Frame.Trail) != 0 || g.Frame.Tick != 400 {
-			t.Errorf("%d spots; frame from %d with %d at tick %d", len(g.Trail), g.Frame.TrailFrom, len(g.Frame.Trail), g.Frame.Tick)
+		if len(g.Tape.Rows) != 21 || g.Frame.Tape.From != 21 || len(g.Frame.Tape.Rows) != 0 || g.Frame.Tick != 400 {
+			t.Errorf("%d rows; frame from %d with %d at tick %d", len(g.Tape.Rows), g.Frame.Tape.From, len(g.Frame.Tape.Rows), g.Frame.Tick)
 		}
 		looks := map[string]bool{}
 		for _, m := range g.Modes {
@@ -81,9 +83,11 @@ func TestHelloSaysEverything(t *testing.T) {
 	})
 }
 
-// follower keeps a trail as the page does.
+// follower keeps what it knows of the tape as the page does.
 type follower struct {
-	trail  [][3]float64
+	rows   [][]float64
+	spans  [][4]int64
+	marks  []markHeard
 	gaps   int
 	hellos int
 }
@@ -92,20 +96,21 @@ func (f *follower) hear(t *testing.T, messages [][]byte) {
 	for _, m := range messages {
 		switch kindOf(t, m) {
 		case "hello":
-			f.trail = greet(t, m).Trail
+			g := greet(t, m).Tape
+			f.rows, f.spans, f.marks = g.Rows, g.Spans, g.Marks
 			f.hellos++
 		case "frame":
-			h := hear(t, m)
-			if h.TrailFrom != len(f.trail) {
+			h := hear(t, m).Tape
+			if h.From != len(f.rows) || h.SpansFrom != len(f.spans) || h.MarksFrom != len(f.marks) {
 				f.gaps++
 				continue
 			}
-			f.trail = append(f.trail, h.Trail...)
+			f.rows, f.spans, f.marks = append(f.rows, h.Rows...), append(f.spans, h.Spans...), append(f.marks, h.Marks...)
 		}
 	}
 }
 
-func TestTrailGoesOnWithoutGapsWhoeverComesAndGoes(t *testing.T) {
+func TestTapeGoesOnWithoutGapsWhoeverComesAndGoes(t *testing.T) {
 	synctest.Test(t, func(t *testing.T) {
 		b := newBench(t, room(t), Opening{Playing: true})
 		v := b.join()
@@ -144,10 +149,14 @@ func TestTrailGoesOnWithoutGapsWhoeverComesAndGoes(t *testing.T) {
 			synctest.Wait()
 			steady.hear(t, v.take())
 		}
-		var spots int
-		b.in(func() { spots = b.s.told.rows })
-		if len(steady.trail) != spots {
-			t.Errorf("%d spots of %d", len(steady.trail), spots)
+		late := b.join()
+		synctest.Wait()
+		g := greet(t, last(t, late.take(), "hello")).Tape
+		if len(g.Rows) < 100 || len(g.Spans) < 6 || len(g.Marks) < 3 {
+			t.Errorf("%d rows, %d spans, %d marks", len(g.Rows), len(g.Spans), len(g.Marks))
+		}
+		if d := cmp.Diff([]any{g.Rows, g.Spans, g.Marks}, []any{steady.rows, steady.spans, steady.marks}); d != "" {
+			t.Errorf("who comes late hears another tape: %s", d)
 		}
 	})
 }
@@ -173,7 +182,7 @@ func TestSlowViewerLosesFramesAndFindsOut(t *testing.T) {
 		}
 		f.hear(t, waiting)
 		if f.gaps != 1 {
-			t.Fatal("the lost frames leave no gap in the trail")
+			t.Fatal("the lost frames leave no gap in the tape")
 		}
 		b.say(slow, `{"kind":"resync"}`)
 		settle()

@@ -197,8 +197,8 @@ func TestReconnectingGoesOnWhereItIs(t *testing.T) {
 	p.conn.CloseNow() // as when a network goes
 	p = dial(t, base+b.id)
 	g := greet(t, p.wait("hello", nil))
-	if g.Frame.Tick < before.Tick || len(g.Trail) == 0 {
-		t.Errorf("tick %d after %d, %d spots", g.Frame.Tick, before.Tick, len(g.Trail))
+	if g.Frame.Tick < before.Tick || len(g.Tape.Rows) == 0 {
+		t.Errorf("tick %d after %d, %d rows", g.Frame.Tick, before.Tick, len(g.Tape.Rows))
 	}
 }
 
