@@ -238,8 +238,8 @@ func finish(t testing.TB, text []byte) sim.Outcome {
 // time or that of a bubble.
 func (b *bench) untilEnded(v *viewer) sim.Outcome {
 	b.t.Helper()
+	b.say(v, `{"kind":"play"}`) // first, for a run that has ended begins again
 	b.say(v, `{"kind":"speed","value":0}`)
-	b.say(v, `{"kind":"play"}`)
 	for range 10_000 {
 		done := false
 		b.in(func() { done = b.s.tape.Done() })
