@@ -10,20 +10,21 @@ const plain = (s) => s.replaceAll('\u00a0', ' ');
 test('a run that scrapes too close falls short at once', () => {
   const v = of({ leeway: 0.047 });
   assert.equal(plain(v.leeway), '0.05 m');
-  assert.equal(plain(v.words), 'of leeway, where 0.10 m is asked. This run falls short.');
+  assert.equal(plain(v.words), 'of leeway, where 0.10 m is asked.');
+  assert.equal(v.judgement, 'This run falls short.');
   assert.equal(v.mark, 'bad');
 });
 
 test('a run that keeps what is asked says so, so far and at its end', () => {
-  assert.match(of({ leeway: 0.2 }).words, /So far it holds/);
+  assert.match(of({ leeway: 0.2 }).judgement, /So far it holds/);
   const v = of({ leeway: 0.2, status: 'arrived', reason: 'It stood at the goal.' });
-  assert.match(v.words, /This run keeps what is asked/);
+  assert.match(v.judgement, /This run keeps what is asked/);
   assert.deepEqual([v.mark, v.status, v.tone, v.reason], ['good', 'arrived', 'done', 'It stood at the goal.']);
 });
 
 test('late, restless or not there is short too', () => {
   const done = { leeway: 0.2, status: 'arrived' };
-  const short = (change) => /falls short/.test(of({ ...done, ...change }).words);
+  const short = (change) => /falls short/.test(of({ ...done, ...change }).judgement);
   assert.equal(short({}), false);
   assert.equal(short({ time: 90.1 }), true);
   assert.equal(short({ switches: 11 }), true);
@@ -70,7 +71,7 @@ test('without shadows and without a shortest way there is less to say', () => {
 
 test('the time of a robot that has ended stands still', () => {
   const f = { time: 120, status: 'arrived', leeway: 0.2, verdict: three({ status: 'arrived', time: 60 }) };
-  assert.match(of(f).words, /keeps what is asked/);
+  assert.match(of(f).judgement, /keeps what is asked/);
   assert.match(spoken(frame(f), asked), /^The run ended at 1:00\.0/);
 });
 
@@ -82,7 +83,7 @@ test('partings are listed in order, and nothing else is', () => {
 test('nothing asked, nothing near: no judgement on the leeway', () => {
   const v = verdict(frame({ leeway: 0.01 }), {});
   assert.equal(v.mark, 'none');
-  assert.equal(v.words, 'of leeway. So far it holds.');
+  assert.equal(`${v.words} ${v.judgement}`, 'of leeway. So far it holds.');
   assert.equal(of({ leeway: null }).mark, 'none');
   assert.equal(of({ leeway: null }).leeway, '–');
 });

@@ -18,6 +18,7 @@ import { Brief } from './ui/brief.js';
 import { intake } from './ui/intake.js';
 import { share } from './ui/share.js';
 import { Strip } from './ui/strip.js';
+import { Strips } from './ui/strips.js';
 import { TapeView } from './ui/tape.js';
 import { shortcut, Transport } from './ui/transport.js';
 import { Verdict } from './ui/verdict.js';
@@ -81,9 +82,10 @@ const transport = new Transport(byId('transport', HTMLElement), byId('legend', H
 });
 const banner = new Banner(byId('banner', HTMLElement), () => live.retry());
 const tape = new TapeView(byId('tape', HTMLElement), { seek, redraw: schedule });
+const strips = new Strips(byId('strips', HTMLElement), () => tape.shown, { session: () => session, seek, redraw: schedule });
 const cards = [
   new Why(byId('why', HTMLElement)), new Verdict(byId('verdict', HTMLElement), (tick) => seek(tick)),
-  transport, tape, brief, new Advice(byId('advice', HTMLElement)),
+  transport, tape, strips, brief, new Advice(byId('advice', HTMLElement)),
 ];
 
 /**

@@ -16,6 +16,7 @@ import { clock, count, fixed, metres, percent, seconds } from './format.js';
  * @typedef {object} Verdict
  * @property {string} leeway the headline number
  * @property {string} words beside it
+ * @property {string} judgement
  * @property {'none' | 'good' | 'bad'} mark of the headline number
  * @property {string} status word, empty while it runs
  * @property {'done' | 'fail' | 'run'} tone of the status
@@ -41,7 +42,8 @@ export function verdict(f, asked, apart = null) {
   const restless = asked.switches !== undefined && f.switches > asked.switches;
   return {
     leeway: metres(f.leeway),
-    words: words(asked, { running, arrived, close, late, restless }),
+    words: asked.leeway_m === undefined ? 'of leeway.' : `of leeway, where ${metres(asked.leeway_m)} is asked.`,
+    judgement: judgement({ running, arrived, close, late, restless }),
     mark: f.leeway === null || asked.leeway_m === undefined ? 'none' : close ? 'bad' : 'good',
     status: running ? '' : f.status,
     tone: running ? 'run' : arrived ? 'done' : 'fail',
@@ -96,14 +98,10 @@ function rows(f, asked, apart) {
 /** @param {number | null} v @returns {Cell} */
 const cell = (v) => ({ text: metres(v), bad: false });
 
-/**
- * @param {Asked} asked
- * @param {{running: boolean, arrived: boolean, close: boolean, late: boolean, restless: boolean}} is
- */
-function words(asked, is) {
-  const of = asked.leeway_m === undefined ? 'of leeway.' : `of leeway, where ${metres(asked.leeway_m)} is asked.`;
-  if (is.close || is.late || is.restless || !(is.running || is.arrived)) return `${of} This run falls short.`;
-  return `${of} ${is.running ? 'So far it holds.' : 'This run keeps what is asked.'}`;
+/** @param {{running: boolean, arrived: boolean, close: boolean, late: boolean, restless: boolean}} is */
+function judgement(is) {
+  if (is.close || is.late || is.restless || !(is.running || is.arrived)) return 'This run falls short.';
+  return is.running ? 'So far it holds.' : 'This run keeps what is asked.';
 }
 
 /**
@@ -114,7 +112,7 @@ function words(asked, is) {
 export function spoken(f, asked) {
   if (f.status === 'running') return '';
   const v = verdict(f, asked);
-  const leeway = f.leeway === null ? '' : ` ${fixed(f.leeway, 2)} m ${v.words}`;
+  const leeway = f.leeway === null ? '' : ` ${fixed(f.leeway, 2)} m ${v.words} ${v.judgement}`;
   return `The run ended at ${clock(lasted(f))}: ${f.status}. ${v.reason}${leeway}`.trim();
 }
 

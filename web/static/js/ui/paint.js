@@ -31,8 +31,6 @@ export class Paint {
   #width = 0;
   #height = 0;
   #ratio = 1;
-  /** @type {Map<string, string>} */
-  #colours = new Map();
   /** @type {Map<string, CanvasPattern | string>} */
   #fills = new Map();
 
@@ -46,7 +44,6 @@ export class Paint {
 
   /** The colours may be others now. */
   forget() {
-    this.#colours.clear();
     this.#fills.clear();
   }
 
@@ -97,7 +94,7 @@ export class Paint {
     if (!hello || (who !== 0 && !tape.shadows)) return;
     const pen = this.#pen;
     const end = tape.endOf(who)?.tick ?? tape.length;
-    pen.font = `600 12px ${this.#colour('--next')}`;
+    pen.font = `600 12px ${colour('--next')}`;
     pen.textBaseline = 'middle';
     for (const box of boxes(tape.lanes[who], end, from, to, this.#width)) {
       const mode = hello.modes[box.mode];
@@ -126,9 +123,9 @@ export class Paint {
   #word(word, x, top, width, look) {
     const pen = this.#pen;
     // The pattern would cut through the letters.
-    pen.fillStyle = this.#colour(COLOURS[look]);
+    pen.fillStyle = colour(COLOURS[look]);
     pen.fillRect(x - 3, top + 1, width + 6, LANE - 2);
-    pen.fillStyle = this.#colour('--on-colour');
+    pen.fillStyle = colour('--on-colour');
     pen.fillText(word, x, top + LANE / 2 + 0.5);
   }
 
@@ -147,10 +144,10 @@ export class Paint {
     const most = Math.min(Math.max(5 * (asked ?? 0), 0.5), 3);
     const y = (/** @type {number} */ gap) => top + tall - (Math.min(Math.max(gap, 0), most) / most) * (tall - 3);
     if (asked !== undefined) {
-      pen.fillStyle = this.#colour('--short');
+      pen.fillStyle = colour('--short');
       pen.fillRect(0, y(asked), this.#width, top + tall - y(asked));
     }
-    pen.strokeStyle = this.#colour('--rule');
+    pen.strokeStyle = colour('--rule');
     pen.lineWidth = 1;
     pen.beginPath();
     pen.moveTo(0, top + tall - 0.5);
@@ -166,7 +163,7 @@ export class Paint {
       const b = BASE[who];
       const stop = Math.min(upTo(rows.length, (i) => rows[i][TICK] <= end && !(who !== 0 && rows[i][b + ENDED])), last);
       pen.setLineDash(who === 1 ? [1, 3] : who === 2 ? [5, 4] : []);
-      pen.strokeStyle = this.#colour(who === 0 ? '--ink' : '--shade-line');
+      pen.strokeStyle = colour(who === 0 ? '--ink' : '--shade-line');
       pen.lineWidth = who === 0 ? 1.7 : 1.3;
       pen.beginPath();
       for (const [x, gap] of thinned(first, stop, (i) => rows[i][TICK], (i) => rows[i][b + GAP] ?? most, from, scale)) pen.lineTo(x, y(gap));
@@ -174,7 +171,7 @@ export class Paint {
     }
     pen.setLineDash([]);
     if (asked === undefined) return;
-    pen.strokeStyle = this.#colour('--failure');
+    pen.strokeStyle = colour('--failure');
     pen.lineWidth = 1.2;
     pen.setLineDash([5, 4]);
     pen.beginPath();
@@ -194,36 +191,26 @@ export class Paint {
   /** @param {Shown} shown @param {number} top */
   #axis(shown, top) {
     const pen = this.#pen;
-    pen.font = `500 11.5px ${this.#colour('--mono')}`;
+    pen.font = `500 11.5px ${colour('--mono')}`;
     pen.textBaseline = 'alphabetic';
     for (const { time, text } of ticks(shown, this.#width)) {
       const x = ((time - shown.from) / (shown.to - shown.from)) * this.#width;
-      pen.strokeStyle = this.#colour('--rule');
+      pen.strokeStyle = colour('--rule');
       pen.beginPath();
       pen.moveTo(Math.round(x) + 0.5, top);
       pen.lineTo(Math.round(x) + 0.5, top + 4);
       pen.stroke();
       const wide = pen.measureText(text).width;
-      pen.fillStyle = this.#colour('--soft');
+      pen.fillStyle = colour('--soft');
       pen.fillText(text, Math.min(Math.max(x - wide / 2, 0), this.#width - wide), top + 15);
     }
-  }
-
-  /** @param {string} name of a custom property of the page */
-  #colour(name) {
-    let value = this.#colours.get(name);
-    if (value === undefined) {
-      value = getComputedStyle(document.documentElement).getPropertyValue(name).trim();
-      this.#colours.set(name, value);
-    }
-    return value;
   }
 
   /** @param {Look} look */
   #fill(look) {
     const known = this.#fills.get(look);
     if (known) return known;
-    const fill = this.#pattern(look) ?? this.#colour(COLOURS[look]);
+    const fill = this.#pattern(look) ?? colour(COLOURS[look]);
     this.#fills.set(look, fill);
     return fill;
   }
@@ -238,10 +225,10 @@ export class Paint {
     if (!pen) return null;
     const exact = tile.width / size;
     pen.scale(exact, exact);
-    pen.fillStyle = this.#colour(COLOURS[look]);
+    pen.fillStyle = colour(COLOURS[look]);
     pen.fillRect(0, 0, size, size);
     pen.globalAlpha = look === 'wall' ? 0.42 : 0.7;
-    pen.strokeStyle = pen.fillStyle = this.#colour('--on-colour');
+    pen.strokeStyle = pen.fillStyle = colour('--on-colour');
     pen.lineWidth = 1.3;
     pen.beginPath();
     if (look === 'wall') {
@@ -258,6 +245,23 @@ export class Paint {
     pattern?.setTransform(new DOMMatrix([1 / exact, 0, 0, 1 / exact, 0, 0]));
     return pattern;
   }
+}
+
+/** @type {Map<string, string>} */
+const colours = new Map();
+matchMedia('(prefers-color-scheme: dark)').addEventListener('change', () => colours.clear());
+
+/**
+ * A colour, or a face, of the page as it now is.
+ * @param {string} name of a custom property
+ */
+export function colour(name) {
+  let value = colours.get(name);
+  if (value === undefined) {
+    value = getComputedStyle(document.documentElement).getPropertyValue(name).trim();
+    colours.set(name, value);
+  }
+  return value;
 }
 
 /** @type {Record<Look, string>} */

@@ -14,6 +14,7 @@ export class Verdict {
   #seek;
   #big;
   #words;
+  #judgement;
   #status;
   #reason;
   #ending;
@@ -39,6 +40,7 @@ export class Verdict {
     this.#seek = seek;
     this.#big = part(card, '.big');
     this.#words = part(card, '.of');
+    this.#judgement = part(card, '.judgement');
     this.#ending = part(card, '.ending');
     this.#status = part(card, '.status');
     this.#reason = part(card, '.reason');
@@ -60,6 +62,7 @@ export class Verdict {
     set(this.#card, 'data-mark', v.mark);
     say(this.#big, v.leeway);
     say(this.#words, v.words);
+    say(this.#judgement, v.judgement);
     set(this.#status, 'data-tone', v.tone);
     say(this.#status, v.status);
     if (v.reason !== this.#said) {
