@@ -90,7 +90,7 @@ Exit status: 0 all well and, for run, the robot arrived; 1 it did not arrive;
 	}
 	root.Flags().AddFlagSet(serve.Flags())
 	root.CompletionOptions.HiddenDefaultCmd = true
-	root.AddCommand(serve, newRun(), newReport(), newValidate(), newLink(), newOpen(), newSchema(), newHealth(), newVersion())
+	root.AddCommand(serve, newRun(), newReport(), newReplay(), newValidate(), newLink(), newOpen(), newSchema(), newHealth(), newVersion())
 	return root
 }
 

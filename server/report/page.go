@@ -69,7 +69,7 @@ func (f *Finished) View(o Options) (View, error) {
 		Version: o.Version,
 	}
 	if !o.Date.IsZero() {
-		v.Date = o.Date.Format("2 January 2006")
+		v.Date = o.Date.Format(dateLayout)
 	}
 	for _, w := range Columns {
 		v.Columns = append(v.Columns, w.String())
