@@ -85,7 +85,7 @@ const tape = new TapeView(byId('tape', HTMLElement), { seek, redraw: schedule })
 const strips = new Strips(byId('strips', HTMLElement), () => tape.shown, { session: () => session, seek, redraw: schedule });
 const cards = [
   new Why(byId('why', HTMLElement)), new Verdict(byId('verdict', HTMLElement), (tick) => seek(tick)),
-  transport, tape, strips, brief, new Advice(byId('advice', HTMLElement)),
+  transport, tape, strips, brief, new Advice(byId('advice', HTMLElement), byId('holds', HTMLElement)),
 ];
 
 /**

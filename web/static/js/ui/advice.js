@@ -13,13 +13,18 @@ const ABOUT = new Map([['exact', 'Where it is exact'], ['gain', 'Gain'], ['braki
 export class Advice {
   #root;
   #list;
+  #short;
   /** @type {Told[] | null} */
   #told = null;
   #form = '';
 
-  /** @param {HTMLElement} root */
-  constructor(root) {
+  /**
+   * @param {HTMLElement} root
+   * @param {Element} short where the sum of it is said in few words
+   */
+  constructor(root, short) {
     this.#root = root;
+    this.#short = short;
     this.#list = part(root, 'ul');
   }
 
@@ -34,6 +39,8 @@ export class Advice {
     const broken = hello.advice.filter((a) => !a.holds).length;
     say(part(this.#root, '.sum'), sum(hello.advice.length, broken));
     set(this.#root, 'data-broken', broken > 0);
+    say(this.#short, inShort(hello.advice));
+    set(this.#short, 'data-broken', broken > 0);
   }
 }
 
@@ -42,6 +49,13 @@ function sum(n, broken) {
   if (n === 0) return 'This robot is the point itself: there is nothing to part from.';
   if (broken === 0) return 'These numbers keep to all of it.';
   return broken === 1 ? 'One of these does not hold.' : `${broken} of these do not hold.`;
+}
+
+/** @param {Told[]} advice */
+function inShort(advice) {
+  const broken = [...new Set(advice.filter((a) => !a.holds).map((a) => (ABOUT.get(a.about) ?? a.about).toLowerCase()))];
+  if (advice.length === 0) return '';
+  return broken.length === 0 ? 'The limits of the simple model hold' : `Past a limit of the simple model: ${broken.join(', ')}`;
 }
 
 /** @param {Told} a */

@@ -2,7 +2,7 @@
 // stop of the Tab key; arrow keys go from one to the next.
 
 import { bunches, kindOf, leadsTo, wordsOf } from '../core/marks.js';
-import { html, set, svg, vary } from '../dom.js';
+import { html, say, set, svg, vary } from '../dom.js';
 
 /** @typedef {import('../core/protocol.js').Mark} Mark */
 /** @typedef {import('../core/marks.js').Bunch} Bunch */
@@ -20,6 +20,8 @@ const SIGNS = new Map([
 
 export class Marks {
   #root;
+  #tip;
+  #width = 0;
   /** @type {Bunch[]} */
   #bunches = [];
   /** @type {HTMLButtonElement[]} */
@@ -28,10 +30,14 @@ export class Marks {
 
   /**
    * @param {HTMLElement} root
+   * @param {HTMLElement} tip where the words of the sign are shown that is pointed at or has the focus
    * @param {(tick: number) => void} seek
    */
-  constructor(root, seek) {
+  constructor(root, tip, seek) {
     this.#root = root;
+    this.#tip = tip;
+    for (const on of ['pointerover', 'focusin']) root.addEventListener(on, (event) => this.#explain(this.#of(event.target)));
+    for (const off of ['pointerout', 'focusout']) root.addEventListener(off, () => this.#explain(-1));
     root.addEventListener('click', (event) => {
       const i = this.#of(event.target);
       if (i >= 0) seek(leadsTo(this.#bunches[i], this.#now()));
@@ -53,6 +59,7 @@ export class Marks {
    */
   draw(marks, x, width, now) {
     this.#now = now;
+    this.#width = width;
     this.#bunches = bunches(marks, x, width, APART);
     while (this.#buttons.length < this.#bunches.length) this.#buttons.push(begin());
     this.#bunches.forEach((b, i) => {
@@ -60,7 +67,6 @@ export class Marks {
       const kind = kindOf(b);
       const words = wordsOf(b);
       set(button, 'data-kind', kind);
-      set(button, 'title', words);
       set(button, 'aria-label', words);
       set(button, 'data-many', b.marks.length > 1);
       const sign = button.querySelector('path');
@@ -70,6 +76,17 @@ export class Marks {
     const shown = this.#buttons.slice(0, this.#bunches.length);
     if (this.#root.children.length !== shown.length) this.#root.replaceChildren(...shown);
     if (!shown.some((b) => b.tabIndex === 0)) this.#stop(0);
+  }
+
+  /** @param {number} i */
+  #explain(i) {
+    set(this.#tip, 'hidden', i < 0);
+    if (i < 0) return;
+    const b = this.#bunches[i];
+    say(this.#tip, wordsOf(b));
+    // Under the sign, as far as there is room beside it.
+    const half = this.#tip.offsetWidth / 2;
+    vary(this.#tip, 'transform', `translateX(${Math.round(Math.min(Math.max(b.x - half, 0), this.#width - 2 * half))}px)`);
   }
 
   /** The sign at which the Tab key stops. @param {number} i */

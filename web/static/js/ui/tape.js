@@ -45,6 +45,8 @@ export class TapeView {
   /** @type {State | null} */
   #state = null;
   #held = false;
+  /** Where keys and hands have led to since the last redraw. @type {number | null} */
+  #led = null;
   /** Status of models where the tape has seen their end. @type {Map<string, string>} */
   #endings = new Map();
   /** @type {HTMLElement[]} */
@@ -64,7 +66,7 @@ export class TapeView {
     this.#now = element(root, '.now');
     this.#badges = part(root, '.badges');
     this.#asked = element(root, '.asked-label');
-    this.#marks = new Marks(element(root, '.marks'), (tick) => told.seek(tick, false));
+    this.#marks = new Marks(element(root, '.marks'), element(root, '.mark-tip'), (tick) => told.seek(tick, false));
     this.#paint = new Paint(canvas);
     this.#badge = LANES.map((who) => html('span', { class: 'badge', 'data-who': NAMES[who], hidden: true }));
     this.#badges.append(...this.#badge);
@@ -90,6 +92,7 @@ export class TapeView {
   /** @param {State} state as it is shown */
   draw(state) {
     this.#state = state;
+    this.#led = null;
     const { hello, frame, tape } = state;
     if (!hello || !frame) return;
     const dt = hello.tick_s;
@@ -211,7 +214,7 @@ export class TapeView {
   #key(event) {
     const { frame, seek, tape, hello } = this.#state ?? {};
     if (!frame || !tape || !hello || event.ctrlKey || event.metaKey || event.altKey) return false;
-    const now = (seek?.tick ?? frame.tick) * hello.tick_s;
+    const now = (this.#led ?? seek?.tick ?? frame.tick) * hello.tick_s;
     const by = event.shiftKey ? FAR : STEP;
     switch (event.key) {
       case 'ArrowLeft':
@@ -254,6 +257,7 @@ export class TapeView {
     const { hello, tape } = this.#state ?? {};
     if (!hello || !tape) return;
     const tick = Math.round(Math.min(Math.max(time / hello.tick_s, 0), tape.length));
+    this.#led = tick;
     this.#told.seek(tick, live);
   }
 

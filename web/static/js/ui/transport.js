@@ -82,7 +82,7 @@ export class Transport {
       for (const li of this.#legend.querySelectorAll('li:not(.shade)')) li.remove();
       this.#legend.prepend(...entries(hello.modes));
     }
-    set(this.#legend, 'data-shadows', hello.shadows);
+    set(this.#legend, 'data-alone', !hello.shadows);
   }
 }
 
