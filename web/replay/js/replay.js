@@ -194,7 +194,10 @@ function controls() {
   }));
   byId('speeds', HTMLElement).append(...SPEEDS.map((s) => {
     const input = html('input', { type: 'radio', name: 'speed', value: s, 'aria-label': `${s} times real time` });
-    input.addEventListener('change', () => player.setSpeed(s));
+    input.addEventListener('change', () => {
+      player.setSpeed(s);
+      if (!input.matches(':focus-visible')) input.blur(); // the arrow keys go on moving time
+    });
     return html('label', {}, input, html('span', { 'aria-hidden': 'true' }, speedWord(s)));
   }));
   const shown = byId('shown', HTMLElement);
@@ -213,9 +216,10 @@ function controls() {
 function keys() {
   document.addEventListener('keydown', (e) => {
     const target = e.target instanceof Element ? e.target : null;
-    if (e.ctrlKey || e.metaKey || e.altKey || target?.matches('input[type=radio], summary, a')) return;
-    // A button that was reached by keyboard answers the space bar itself.
-    if (e.key === ' ' && target?.matches('button:focus-visible, input')) return;
+    if (e.ctrlKey || e.metaKey || e.altKey) return;
+    // What was reached by keyboard answers its own keys.
+    if (e.key === ' ' && target?.matches('button:focus-visible, input[type=checkbox], summary, a')) return;
+    if (e.key.startsWith('Arrow') && target?.matches('input[type=radio]')) return;
     const far = e.shiftKey ? 10 : 1;
     /** @type {Record<string, () => void>} */
     const acts = {
