@@ -75,8 +75,9 @@ func (e *Engine) seek(in *Input, m *Mode, top float64) geom.Vec {
 const maxDeflection = 0.8660254037844387 // cosine of 30°
 
 func (e *Engine) clearOf(in *Input, dir geom.Vec, w, reach float64) geom.Vec {
-	left, okL := e.sweep(dir, RightSide, w, reach)
-	right, okR := e.sweep(dir, LeftSide, w, reach)
+	e.see.blockStrips(w, reach)
+	left, okL := e.see.sweep(dir, RightSide)
+	right, okR := e.see.sweep(dir, LeftSide)
 	cl, cr := -1.0, -1.0
 	if okL {
 		cl = dir.Dot(left)

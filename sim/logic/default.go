@@ -26,13 +26,13 @@ func DefaultNumbers(hull, speed, goalRadius float64) Numbers {
 	mm := func(x float64) float64 { return math.Round(x*1000) / 1000 }
 	standOff := mm(math.Max(0.953*hull, 0.3*speed))
 	safe := mm(math.Max(0.38*hull, 0.12*speed))
-	notice := mm(standOff + math.Max(0.477*hull, 0.22*speed))
+	notice := mm(standOff + math.Max(float64(0.477*hull), float64(0.22*speed)))
 	return Numbers{
 		Notice:     notice,
 		StandOff:   standOff,
 		Safe:       safe,
 		Band:       safe / 2,
-		Gain:       mm(notice + 0.24*hull),
+		Gain:       mm(notice + float64(0.24*hull)),
 		MinTime:    1,
 		GoalRadius: goalRadius,
 	}
@@ -62,8 +62,7 @@ func Default(n Numbers) *Logic {
 		},
 		Start: goal,
 		Transitions: []Transition{
-			{From: AnyMode, To: arrived, When: []Condition{below(GoalDistance, n.GoalRadius/2, 0)}},
-			{From: AnyMode, To: arrived, When: []Condition{below(GoalDistance, n.GoalRadius, 0)}, Hold: 0.5},
+			{From: AnyMode, To: arrived, When: []Condition{below(GoalDistance, n.GoalRadius, 0)}, Hold: 0.7},
 			{From: goal, To: avoid, When: []Condition{below(Nearest, n.Safe, 0)}, Meet: true},
 			{From: wall, To: avoid, When: []Condition{below(Nearest, n.Safe, 0)}},
 			{From: goal, To: wall, When: []Condition{below(Ahead, n.Notice, 0)}, Meet: true},
@@ -72,9 +71,12 @@ func Default(n Numbers) *Logic {
 			{From: wall, To: goal, Hold: 0.1, When: []Condition{atLeast(TimeSinceMeeting, n.MinTime),
 				atLeast(Gain, n.Gain), atLeast(Ahead, 1.05*n.Notice)}},
 			{From: wall, To: gaveUp, When: []Condition{atLeast(Closed, 1)}},
+			{From: avoid, To: gaveUp, When: []Condition{atLeast(Closed, 1)}},
+			{From: wall, To: gaveUp, MinTime: 30, When: []Condition{below(WayInMode, n.StandOff/2, 0)}},
+			{From: avoid, To: gaveUp, MinTime: 30, When: []Condition{below(WayInMode, n.StandOff/2, 0)}},
 			{From: avoid, To: wall, When: []Condition{atLeast(Nearest, n.Safe+n.Band)}},
 		},
 		Sector: math.Pi / 6,
-		Margin: n.Safe / 2,
+		Margin: 0.6 * n.Safe,
 	}
 }

@@ -37,25 +37,27 @@ func (e *Engine) followWall(in *Input, m *Mode, top float64) geom.Vec {
 	return dir.Scale(e.paced(in, dir, top))
 }
 
-// alongWall returns the direction that follows the wall.
-func (e *Engine) alongWall(in *Input, into geom.Vec, side Side, standOff float64) (geom.Vec, bool) {
+// alongWall returns the direction in which to go along a wall that stands in the
+// direction into and shall be kept on a side; ok is false when no direction is free.
+func (e *Engine) alongWall(in *Input, into geom.Vec, side Side, standOff float64) (dir geom.Vec, ok bool) {
 	s := &e.see
 	nearest := math.Inf(1)
 	for i := range s.points {
-		nearest = math.Min(nearest, s.points[i].rho)
+		if s.points[i].rho < nearest {
+			nearest = s.points[i].rho
+		}
 	}
 	w := math.Max(in.Hull, math.Min(in.Hull+e.l.Margin, nearest))
 	aim := math.Max(standOff, in.Hull/2)
-	var dir geom.Vec
-	ok := false
 	// Where a long strip leaves nothing but to turn back, a shorter one may still
 	// find the way round a tight bend.
 	for reach := 2 * w; reach > w/4; reach /= 2 {
-		first, free := e.sweep(into, side, w, reach)
+		s.blockStrips(w, reach)
+		first, free := s.sweep(into, side)
 		if !free {
 			continue
 		}
-		d := e.standOff(into, first, e.middle(first, side, w, reach), side, in.Hull+standOff, aim)
+		d := e.standOff(into, first, s.middle(first, side), side, in.Hull+standOff, aim)
 		back := e.turnsBack(d)
 		if !ok || !back {
 			dir, ok = d, true
@@ -73,147 +75,33 @@ func (e *Engine) turnsBack(dir geom.Vec) bool {
 	return dir.Dot(e.wall.travel) < back
 }
 
-// sweep turns a ray from the direction from, away from a wall on the given side
-// (clockwise for a wall on the left), until the strip of half width w along it
-// is free for the length reach, and returns that direction; ok is false when no direction is free.
-func (e *Engine) sweep(from geom.Vec, side Side, w, reach float64) (geom.Vec, bool) {
-	points := e.see.points
-	dir := from
-	turned := 0.0
-	for {
-		moved := false
-		for i := range points {
-			p := &points[i]
-			if p.rho >= reach+w || p.rho == 0 {
-				continue
-			}
-			cos := cosBlocked(p.rho, w, reach)
-			if p.v.Dot(dir) <= float64(cos*p.rho)+1e-12 {
-				continue
-			}
-			next := edge(p, cos, side)
-			// Only ever forward.
-			at := turn(from, next, side)
-			if at < turned {
-				return geom.Vec{}, false
-			}
-			dir, turned = next, at
-			moved = true
-		}
-		if !moved {
-			return dir, true
-		}
-	}
-}
-
-// cosBlocked returns the cosine of the angle on either side of a point at
-// distance rho within which a strip of half width w and length reach meets it.
-func cosBlocked(rho, w, reach float64) float64 {
-	switch {
-	case rho <= w:
-		// Inside already: every direction that comes nearer is blocked.
-		return -math.Min(0.5, (w-rho)/reach)
-	case float64(rho*rho) <= float64(reach*reach)+float64(w*w):
-		return math.Sqrt(1 - float64((w/rho)*(w/rho)))
-	default:
-		return (float64(rho*rho) + float64(reach*reach) - float64(w*w)) / (2 * rho * reach)
-	}
-}
-
-// edge returns the direction at which a blocked interval about p ends, turning away from a wall on the side.
-func edge(p *point, cos float64, side Side) geom.Vec {
-	sin := math.Sqrt(math.Max(0, 1-float64(cos*cos)))
-	if side == LeftSide {
-		sin = -sin
-	}
-	return p.v.Scale(1/p.rho).Rotate(sin, cos)
-}
-
-// turn measures how far b is turned from a, away from a wall on the side: a number
-// in [0, 4) that grows with the angle and is 0 at none, 1 at a right angle, 2 at a half turn.
-func turn(a, b geom.Vec, side Side) float64 {
-	x, y := a.Dot(b), a.Cross(b)
-	if side == LeftSide {
-		y = -y
-	}
-	n := math.Abs(x) + math.Abs(y)
-	if n == 0 {
-		return 0
-	}
-	switch {
-	case y >= 0 && x >= 0:
-		return y / n
-	case y >= 0:
-		return 1 - x/n
-	case x < 0:
-		return 2 - y/n
-	default:
-		return 3 + x/n
-	}
-}
-
-// middle returns the direction in the middle of the opening that begins at first;
-// a right angle beyond first when the opening is wider than a half turn.
-func (e *Engine) middle(first geom.Vec, side Side, w, reach float64) geom.Vec {
-	points := e.see.points
-	other := Side(-side)
-	open := 2.0
-	end := first.Scale(-1)
-	for i := range points {
-		p := &points[i]
-		if p.rho >= reach+w || p.rho == 0 {
-			continue
-		}
-		cos := cosBlocked(p.rho, w, reach)
-		if p.v.Dot(first) > float64(cos*p.rho)-1e-9 && turn(first, p.v, side) > 2 {
-			continue // this one ends where the opening begins
-		}
-		start := edge(p, cos, other)
-		if a := turn(first, start, side); a < open {
-			open, end = a, start
-		}
-	}
-	if open >= 2 {
-		if side == LeftSide {
-			return geom.Vec{X: first.Y, Y: -first.X}
-		}
-		return first.Perp()
-	}
-	m := first.Add(end)
-	if m.Norm() < 1e-6 {
-		if side == LeftSide {
-			return geom.Vec{X: first.Y, Y: -first.X}
-		}
-		return first.Perp()
-	}
-	return m.Unit()
-}
-
 // standOff turns on from first, at most to middle, until the place at distance
-// aim is farther than w from everything on the wall's side of first.
+// aim is farther than w from everything on the wall's side of first. To aim at a place
+// ahead instead of keeping off each return by itself makes a noisy wall look smooth.
 func (e *Engine) standOff(into, first, middle geom.Vec, side Side, w, aim float64) geom.Vec {
-	points := e.see.points
-	limit := turn(into, first, side)
+	s := &e.see
+	limit, room := turn(into, first, side), turn(first, middle, side)
+	far, rest := aim+w, float64(aim*aim)-float64(w*w)
 	dir := first
-	room := turn(first, middle, side)
-	for pass := 0; pass < 8; pass++ {
+	for range maxPasses {
 		moved := false
-		for i := range points {
-			p := &points[i]
-			if p.rho >= aim+w || p.rho == 0 {
+		for i := range s.points {
+			p := &s.points[i]
+			if p.rho >= far || p.rho == 0 {
+				continue
+			}
+			// |p − aim·dir| < w
+			if float64(p.rho*p.rho)+rest >= float64(2*aim*p.v.Dot(dir))-1e-12 {
 				continue
 			}
 			if a := turn(into, p.v, side); a > limit && a < 3 {
-				continue
+				continue // beyond the opening
 			}
-			cos := (float64(p.rho*p.rho) + float64(aim*aim) - float64(w*w)) / (2 * p.rho * aim)
-			if cos >= 1 || p.v.Dot(dir) <= float64(cos*p.rho)+1e-12 {
-				continue
-			}
-			if cos <= -1 {
+			b := block{p.v.Scale(1 / p.rho), (float64(p.rho*p.rho) + rest) / (2 * p.rho * aim)}
+			if b.cos <= -1 {
 				return middle
 			}
-			next := edge(p, cos, side)
+			next := b.end(side)
 			if turn(first, next, side) >= room {
 				return middle
 			}
@@ -242,7 +130,7 @@ func (e *Engine) holdWall(in *Input, m *Mode) bool {
 	var joined, any *point
 	for i := range s.points {
 		p := &s.points[i]
-		if !e.onSide(p.v, p.rho) {
+		if any != nil && p.rho >= any.rho && joined != nil && p.rho >= joined.rho || !e.onSide(p.v, p.rho) {
 			continue
 		}
 		if any == nil || p.rho < any.rho {
@@ -252,7 +140,7 @@ func (e *Engine) holdWall(in *Input, m *Mode) bool {
 			joined = p
 		}
 	}
-	far := in.Hull + m.StandOff + 1.5
+	far := farthestWall(in, m)
 	switch {
 	case joined != nil && joined.rho < far:
 		e.take(joined)
@@ -265,6 +153,9 @@ func (e *Engine) holdWall(in *Input, m *Mode) bool {
 	}
 	return true
 }
+
+// farthestWall is how far from the hull's centre a place on a followed wall may be, m.
+func farthestWall(in *Input, m *Mode) float64 { return m.StandOff + float64(8*in.Hull) }
 
 // take makes p the followed place.
 func (e *Engine) take(p *point) {
@@ -279,7 +170,7 @@ func (e *Engine) moveAlong(in *Input, into, dir geom.Vec, standOff float64) {
 	var best *point
 	for i := range s.points {
 		p := &s.points[i]
-		if p.rho > 2*in.Hull+standOff || best != nil && p.rho >= best.rho {
+		if p.rho > float64(2*in.Hull)+standOff || best != nil && p.rho >= best.rho {
 			continue
 		}
 		if e.onSide(p.v, p.rho) && turn(into, p.v, side) <= limit {
@@ -322,7 +213,7 @@ func (e *Engine) findWall(in *Input, m *Mode) bool {
 	switch {
 	case touch < near:
 		e.take(ahead)
-	case nearest != nil && nearest.rho < in.Hull+m.StandOff+1.5:
+	case nearest != nil && nearest.rho < farthestWall(in, m):
 		e.take(nearest)
 	}
 	return e.wall.known
@@ -361,9 +252,10 @@ const foresight = 8
 // wayOn returns the direction of the first way past the wall, kept on the given
 // side, that is free for as far as it is looked at.
 func (e *Engine) wayOn(in *Input, into geom.Vec, side Side) (geom.Vec, bool) {
-	w := in.Hull + e.l.Margin
+	s, w := &e.see, in.Hull+e.l.Margin
 	for reach := math.Min(foresight*in.Hull, e.track.goalFarness); reach > w/4; reach /= 2 {
-		if dir, ok := e.sweep(into, side, w, reach); ok {
+		s.blockStrips(w, reach)
+		if dir, ok := s.sweep(into, side); ok {
 			return dir, true
 		}
 	}

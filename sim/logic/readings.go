@@ -13,7 +13,7 @@ func (e *Engine) read(in *Input) {
 	toGoal := in.Goal.Sub(t.plan)
 	r[GoalBearing] = math.Abs(geom.Atan2(s.head.Cross(toGoal), s.head.Dot(toGoal)))
 	r[Nearest] = s.nearest
-	r[Front], r[Left], r[Right] = s.front.value(), s.left.value(), s.right.value()
+	r[Front], r[Left], r[Right] = s.sector[frontSector], s.sector[leftSector], s.sector[rightSector]
 	e.readWay(in)
 	r[BestDistance] = t.best
 	r[Gain] = t.best - (t.distance - r[FreeWay])
@@ -40,30 +40,29 @@ func (e *Engine) read(in *Input) {
 // wider: a way that is only just free is not worth leaving the wall for.
 //
 // The two beams on either side of the way always count, even where they meet
-// something outside the strip: what stands there may reach into the strip between them.
+// something outside the strip: what stands there may reach into the strip between
+// them. (Beams as close as those of the ideal fan leave no room for that.)
 func (e *Engine) readWay(in *Input) {
 	s, t := &e.see, &e.track
 	w := in.Hull + e.l.Margin
 	if besideWall(e.l.Modes[e.mode].Behaviour) {
 		w += e.l.Margin
 	}
-	enough := math.Max(0, t.goalFarness-in.GoalRadius/2)
+	enough := math.Max(0, t.goalFarness-float64(in.GoalRadius/2))
 	free, ahead := math.Inf(1), s.limit
-	meet := func(touch, rho float64) {
-		if touch < enough {
-			free = math.Min(free, touch)
-			ahead = math.Min(ahead, rho-in.Hull)
-		}
-	}
 	for i := range s.points {
 		p := &s.points[i]
-		if touch, ok := touchAt(p.v, t.goalDir, w); ok {
-			meet(touch, p.rho)
+		if touch, ok := touchAt(p.v, t.goalDir, w); ok && touch < enough {
+			free = math.Min(free, touch)
+			ahead = math.Min(ahead, p.rho-in.Hull)
 		}
 	}
-	for _, side := range [...]Side{LeftSide, RightSide} {
-		if rho, ok := e.beside(in, side); ok {
-			meet(math.Max(0, rho-w), rho)
+	if s.wide {
+		for _, rho := range e.besideWay(in) {
+			if touch := math.Max(0, rho-w); touch < enough {
+				free = math.Min(free, touch)
+				ahead = math.Min(ahead, rho-in.Hull)
+			}
 		}
 	}
 	if math.IsInf(free, 1) && s.limit < enough {
@@ -73,38 +72,27 @@ func (e *Engine) readWay(in *Input) {
 	e.readings[Ahead] = ahead
 }
 
-// beside returns the distance from the hull's centre to what the beam next to the
-// way to the goal, on the given side of it, has met; ok is false when it has met nothing.
-func (e *Engine) beside(in *Input, side Side) (rho float64, ok bool) {
+// besideWay returns the distances from the hull's centre to what the beams next to
+// the way to the goal, on either side of it, have met; +Inf for nothing.
+func (e *Engine) besideWay(in *Input) (rho [2]float64) {
 	s := &e.see
 	way := e.track.goalDir.Rotate(-s.head.Y, s.head.X)
-	best := -2.0
+	beams, best := [2]*beam{}, [2]float64{-2, -2}
 	for i := range s.beams {
-		b := &s.beams[i]
 		dir := in.Scan.Dir[i]
-		if b.tick < 0 || way.Cross(dir)*float64(side) < 0 {
-			continue
+		c, side := way.Dot(dir), way.Cross(dir)
+		if side >= 0 && c > best[0] {
+			best[0], beams[0] = c, &s.beams[i]
 		}
-		if c := way.Dot(dir); c > best {
-			best, ok = c, b.hit
-			rho = b.at.Sub(s.pos).Norm()
+		if side <= 0 && c > best[1] {
+			best[1], beams[1] = c, &s.beams[i]
 		}
 	}
-	return rho, ok
-}
-
-// touchAt returns how far a disc of radius w, centred at the origin, moves along
-// the unit vector dir until it touches the point p; ok is false when it never
-// does. A disc that overlaps p already touches at 0, unless it moves away.
-func touchAt(p, dir geom.Vec, w float64) (distance float64, ok bool) {
-	along := p.Dot(dir)
-	if along <= 0 {
-		return 0, false
+	for k, b := range beams {
+		rho[k] = math.Inf(1)
+		if b != nil && b.hit {
+			rho[k] = b.at.Sub(s.pos).Norm()
+		}
 	}
-	side := dir.Cross(p)
-	left := float64(w*w) - float64(side*side)
-	if left <= 0 {
-		return 0, false
-	}
-	return math.Max(0, along-math.Sqrt(left)), true
+	return rho
 }

@@ -83,26 +83,30 @@ func (e *Engine) startMeeting() {
 // meet begins to deal with an obstacle in mode m. Every obstacle should be met
 // nearer to the goal than the robot has been before: it left the last one because
 // its way looked free until beyond that. Where that was wrong, d_min stays, so that
-// the same view does not deceive it again; and when it happens over and over, side and
-// meeting point stay too, so that in the end the boundary closes.
+// the same view does not deceive it again, and the obstacle is gone round the other
+// way; and when it happens over and over, side and meeting point stay too, so that in
+// the end the boundary closes.
 func (e *Engine) meet(in *Input, m *Mode) {
 	t := &e.track
 	e.wall.known = false
-	best := t.partedBest
+	before, best := t.side, t.partedBest
 	deceived := t.parted && t.distance > best-leastProgress
 	t.parted = false
-	if deceived {
-		t.deceptions++
-	} else {
+	if !deceived {
 		t.deceptions = 0
+		e.startMeeting()
+		e.chooseSide(in, m)
+		return
 	}
+	t.deceptions++
 	if t.deceptions > maxDeceptions {
 		return
 	}
 	e.startMeeting()
 	e.chooseSide(in, m)
-	if deceived {
-		t.best = best
+	t.best = best
+	if m.Side == BetterSide && before != NoSide {
+		t.side = -before
 	}
 }
 
@@ -154,9 +158,9 @@ func (l *loop) follow(pos, wall geom.Vec, step, hull float64) {
 		}
 		since := l.way - m.way
 		off := pos.Sub(m.at).Norm()
-		near := hull + math.Min(0.01*since, hull) // the estimate drifts
+		near := hull + math.Min(float64(0.01*since), hull) // the estimate drifts
 		switch {
-		case off > 3*hull+near:
+		case off > float64(3*hull)+near:
 			m.left = true
 		case m.left && off < near && dir.Dot(m.dir) > 0.5 && wall.Sub(m.wall).Norm() < near+hull,
 			!m.left && since > cramped*hull:
