@@ -25,6 +25,8 @@ test('what comes again is passed over, and what is missing is noticed without a 
   assert.equal(t.append(more, 60), true);
   assert.deepEqual([t.rows.length, t.lanes[0].length], [4, 2]);
   const { version } = t;
+  assert.equal(t.append({ ...more, from: 4, rows: [], spans_from: 4, spans: [] }, 60), true);
+  assert.equal(t.version, version); // nothing to be painted anew
   for (const gap of [{ from: 5 }, { spans_from: 5 }, { marks_from: 1 }]) assert.equal(t.append({ ...more, ...gap }, 99), false);
   assert.deepEqual([t.version, t.length], [version, 60]);
 });

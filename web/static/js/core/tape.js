@@ -64,6 +64,7 @@ export class Tape {
     this.#spans = 0;
     this.#farthest = [];
     for (const way of this.ways) way.clear();
+    this.version++;
     this.append({ from: 0, rows: t.rows, spans_from: 0, spans: t.spans, marks_from: 0, marks: t.marks }, t.length);
   }
 
@@ -75,6 +76,7 @@ export class Tape {
    */
   append(more, length) {
     if (more.from > this.rows.length || more.spans_from > this.#spans || more.marks_from > this.marks.length) return false;
+    const before = this.rows.length + this.#spans + this.marks.length;
     for (let i = this.rows.length - more.from; i < more.rows.length; i++) this.#add(more.rows[i]);
     for (let i = this.#spans - more.spans_from; i < more.spans.length; i++) {
       const [who, tick, mode, side] = more.spans[i];
@@ -82,8 +84,10 @@ export class Tape {
       this.#spans++;
     }
     for (let i = this.marks.length - more.marks_from; i < more.marks.length; i++) this.marks.push(more.marks[i]);
+    // A frame that only looks elsewhere adds nothing, and nothing is painted anew.
+    const grown = this.rows.length + this.#spans + this.marks.length > before || length > this.length;
     this.length = Math.max(this.length, length);
-    this.version++;
+    if (grown) this.version++;
     return true;
   }
 
