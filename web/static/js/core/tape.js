@@ -105,6 +105,11 @@ export class Tape {
     this.#farthest.push(Math.max(this.#farthest.at(-1) ?? 0, apart));
   }
 
+  /** Changes whenever more is on the tape than a longer stretch of what was. */
+  get stamp() {
+    return `${this.ways[0].epoch} ${this.#spans} ${this.marks.length}`;
+  }
+
   /** Whether the tape has the shadows. */
   get shadows() {
     return this.rows.length > 0 && this.rows[0].length > BASE[2] + GAP;

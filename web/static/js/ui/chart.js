@@ -12,7 +12,7 @@ import { colour } from './paint.js';
 /** Height of a chart, px. */
 const HEIGHT = 92;
 /** While it plays, a chart takes in what is new this often, ms. */
-const OFTEN = 120;
+const OFTEN = 300;
 
 const VENDOR = new URL('../../vendor/uplot/', import.meta.url);
 /** @type {Promise<any> | null} */

@@ -103,7 +103,8 @@ export class TapeView {
     const form = `${this.#fresh} ${few}`;
     if (!this.#painted.startsWith(`${form} `)) this.#measure(few);
     if (this.#width === 0) return;
-    const key = `${form} ${tape.version} ${this.#shown.from} ${this.#shown.to} ${hello.asked.leeway_m} ${hello.shadows}`;
+    // A stretch that has grown by less than half a pixel is not painted anew.
+    const key = `${form} ${tape.stamp} ${Math.floor(2 * this.#x(length))} ${this.#shown.from} ${this.#shown.to} ${hello.asked.leeway_m} ${hello.shadows}`;
     if (key !== this.#painted) {
       this.#painted = key;
       this.#paint.draw(state, this.#shown, few);
