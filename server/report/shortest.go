@@ -19,6 +19,9 @@ type yardstick struct {
 	way  float64
 }
 
+// mostPieces bounds the time that is spent on looking: 20,000 take about two seconds.
+const mostPieces = 40_000
+
 type question struct {
 	from, to geom.Vec
 	within   float64
@@ -29,6 +32,13 @@ func newYardstick(sc *scenario.Scenario, c *sim.Config) *yardstick {
 		if e.What == "goal" || e.What == "robot" || e.What == "solid" {
 			return &yardstick{none: "the " + thing(&e) + " was moved while it ran"}
 		}
+	}
+	pieces := 0
+	for i := range c.Floor.Solids {
+		pieces += len(c.Floor.Solids[i].Points)
+	}
+	if pieces > mostPieces {
+		return &yardstick{none: "the floor has too many walls for it to be looked for"}
 	}
 	yard, err := reach.New(c.Floor, c.Hull)
 	if err != nil {

@@ -49,7 +49,10 @@ func (f *Finished) Table() []Row {
 			cells[0].Text = fmt.Sprintf("%.1f s", o.Time)
 		}
 		if !math.IsInf(o.Leeway, 0) {
-			cells[1].Text, _ = pair(o.Leeway, asked.Leeway)
+			cells[1].Text = metres(o.Leeway)
+			if cells[1].Bad {
+				cells[1].Text, _ = pair(o.Leeway, asked.Leeway)
+			}
 		}
 		if m.Shortest > 0 && o.Status == sim.Arrived { // a way that does not get there is no detour
 			cells[2].Text = fmt.Sprintf("%.2f×", o.Way/m.Shortest)
@@ -83,8 +86,11 @@ func (f *Finished) Headline() Headline {
 	o, asked := f.Run.Outcome(), f.Run.Config().Asked
 	h := Headline{Big: none, Short: f.Short(), Words: "This run keeps what is asked."}
 	least := metres(asked.Leeway)
-	if !math.IsInf(o.Leeway, 0) {
+	switch {
+	case o.Leeway < asked.Leeway:
 		h.Big, least = pair(o.Leeway, asked.Leeway)
+	case !math.IsInf(o.Leeway, 0):
+		h.Big = metres(o.Leeway)
 	}
 	h.Of = fmt.Sprintf("of leeway, where %s is asked.", least)
 	if h.Short {
