@@ -11,7 +11,6 @@ import (
 	"strings"
 	"testing"
 
-	"github.com/chromedp/cdproto/emulation"
 	"github.com/chromedp/cdproto/network"
 	"github.com/chromedp/cdproto/page"
 	"github.com/chromedp/chromedp"
@@ -103,6 +102,7 @@ func stepped(t *testing.T, slug string, tick int64) *shadow.Set {
 const loadsNothing = `performance.getEntriesByType('resource').filter((r) => !r.name.startsWith('data:')).length === 0`
 
 func TestReplayPlaysFromDiskWithoutANetwork(t *testing.T) {
+	t.Parallel()
 	p := fromDisk(t, made(t, "replay", "shipped:wall"))
 	whole := stepped(t, "wall", -1)
 	length := float64(whole.Tick()) * 0.005
@@ -175,6 +175,7 @@ func TestReplayPlaysFromDiskWithoutANetwork(t *testing.T) {
 }
 
 func TestReplayJumpsToPartingsAndSaysWhy(t *testing.T) {
+	t.Parallel()
 	p := fromDisk(t, made(t, "replay", "shipped:wall"))
 	whole := stepped(t, "wall", -1)
 	partings := append(slices.Clone(whole.Partings(shadow.Point)), whole.Partings(shadow.Unicycle)...)
@@ -234,14 +235,14 @@ func TestReplayJumpsToPartingsAndSaysWhy(t *testing.T) {
 }
 
 func TestReplayOnAPhoneInTheDark(t *testing.T) {
+	t.Parallel()
 	p := newTab(t, nil)
-	call(p, emulation.SetDeviceMetricsOverride, emulation.SetDeviceMetricsOverrideParams{Width: 390, Height: 844, DeviceScaleFactor: 2, Mobile: true})
-	call(p, emulation.SetTouchEmulationEnabled, emulation.SetTouchEmulationEnabledParams{Enabled: true})
-	call(p, emulation.SetEmulatedMedia, emulation.SetEmulatedMediaParams{Features: []*emulation.MediaFeature{{Name: "prefers-color-scheme", Value: "dark"}}})
+	p.size(390, 844, true)
+	p.scheme("dark")
 	p.openFile(made(t, "replay", "shipped:lag"))
 	p.says("h1", "Heavy on its wheels")
-	if wide := eval[float64](p, `document.documentElement.scrollWidth`); wide > 390 {
-		t.Errorf("the page is %v pixels wide", wide)
+	if out := eval[string](p, beside); out != "" {
+		t.Errorf("it sticks out: %s", out)
 	}
 	p.see("it is dark", `getComputedStyle(document.body).backgroundColor === 'rgb(20, 24, 29)'`)
 	p.see("all controls can be hit", `[...document.querySelectorAll('.controls button, .controls label')].every((e) => e.getBoundingClientRect().height >= 20)`)
@@ -257,6 +258,7 @@ func TestReplayOnAPhoneInTheDark(t *testing.T) {
 
 // Whatever a scenario is called, its words are shown and do nothing.
 func TestReplayAndReportOfAHostileFile(t *testing.T) {
+	t.Parallel()
 	const name = `</script><img src=x onerror="document.title='owned'">`
 	sc := scenario.New(5, 4)
 	sc.Name, sc.Purpose = name, "<b>"+name
@@ -274,13 +276,14 @@ func TestReplayAndReportOfAHostileFile(t *testing.T) {
 }
 
 func TestReportFromDiskAndOnPaper(t *testing.T) {
+	t.Parallel()
 	p := fromDisk(t, made(t, "report", "shipped:doors"))
 	p.says("h1", "Clinic supply run")
 	p.see("its letters are its own", `document.fonts.check('15px "Leeway Next"')`)
 	for _, width := range []int64{1440, 390} {
-		call(p, emulation.SetDeviceMetricsOverride, emulation.SetDeviceMetricsOverrideParams{Width: width, Height: 900, DeviceScaleFactor: 1})
-		if wide := eval[float64](p, `document.documentElement.scrollWidth`); wide > float64(width) {
-			t.Errorf("at %d pixels the page is %v wide", width, wide)
+		p.size(width, 900, false)
+		if out := eval[string](p, beside); out != "" {
+			t.Errorf("at %d pixels it sticks out: %s", width, out)
 		}
 	}
 	if !eval[bool](p, loadsNothing) {
@@ -291,6 +294,41 @@ func TestReportFromDiskAndOnPaper(t *testing.T) {
 		sheets := bytes.Count(pdf.Data, []byte("/Type /Page\n")) + bytes.Count(pdf.Data, []byte("/Type /Page ")) + bytes.Count(pdf.Data, []byte("/Type/Page/"))
 		if !bytes.HasPrefix(pdf.Data, []byte("%PDF-")) || sheets == 0 || sheets > 5 {
 			t.Errorf("%s: %d sheets in %d bytes", paper, sheets, len(pdf.Data))
+		}
+	}
+}
+
+// TestFilesAreAccessible has axe-core look for what keeps people out of the pages
+// that are kept as files.
+func TestFilesAreAccessible(t *testing.T) {
+	t.Parallel()
+	checker, err := os.ReadFile(axe)
+	if err != nil {
+		how := "report and replay were not checked for accessibility: axe-core is not installed; (cd .ci/js && npm ci), then run the test again"
+		if os.Getenv("CI") == "true" {
+			t.Fatal(how)
+		}
+		tell("server/e2e: " + how)
+		return
+	}
+	p := newTab(t, nil)
+	for _, command := range []string{"report", "replay"} {
+		path := made(t, command, "shipped:doors")
+		for _, scheme := range []string{"light", "dark"} {
+			for _, width := range []int64{1440, 390} {
+				p.size(width, 900, width < 500)
+				p.scheme(scheme)
+				p.openFile(path)
+				p.says("h1", "Clinic supply run")
+				eval[any](p, "void function () {"+string(checker)+"}.call(window)")
+				found := eval[struct {
+					Passes     int
+					Violations []string
+				}](p, `axe.run().then((r) => ({passes: r.passes.length, violations: r.violations.map((v) => v.id + ': ' + v.help + ': ' + v.nodes.map((n) => n.html).join(' '))}))`)
+				if found.Passes < 10 || len(found.Violations) > 0 {
+					t.Errorf("%s, %s, %d pixels: %d rules passed, violated are %s", command, scheme, width, found.Passes, strings.Join(found.Violations, "\n\t"))
+				}
+			}
 		}
 	}
 }
