@@ -52,6 +52,10 @@ func Execute(ctx context.Context, args []string, in io.Reader, out, errs io.Writ
 	case errors.Is(err, errNotArrived):
 		return notArrived
 	}
+	var code exitCode
+	if errors.As(err, &code) {
+		return int(code)
+	}
 	var faulty *faultyInput
 	if errors.As(err, &faulty) {
 		io.WriteString(errs, faulty.report())
@@ -90,7 +94,7 @@ Exit status: 0 all well and, for run, the robot arrived; 1 it did not arrive;
 	}
 	root.Flags().AddFlagSet(serve.Flags())
 	root.CompletionOptions.HiddenDefaultCmd = true
-	root.AddCommand(serve, newRun(), newReport(), newReplay(), newValidate(), newLink(), newOpen(), newSchema(), newHealth(), newVersion())
+	root.AddCommand(serve, newRun(), newTrials(), newSweep(), newCompare(), newAudit(), newLimit(), newTune(), newCheck(), newReport(), newReplay(), newValidate(), newLink(), newOpen(), newSchema(), newHealth(), newVersion())
 	return root
 }
 

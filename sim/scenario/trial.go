@@ -376,3 +376,14 @@ func rounded(x, step float64) float64 { return math.Round(x/step)/math.Round(1/s
 
 // degreesWithin turns an angle into [−180, 180].
 func degreesWithin(a float64) float64 { return math.Remainder(a, 360) }
+
+// Number describes a number that a study may set: its field, its value now, and
+// whether it holds whole numbers only.
+func (s *Scenario) Number(path string) (f Field, value float64, whole bool, err error) {
+	r, v, err := s.varying(path)
+	if err != nil {
+		return Field{}, 0, false, err
+	}
+	value, err = s.NumberAt(path)
+	return r.copyOfField(), value, v.CanInt(), err
+}

@@ -46,9 +46,9 @@ type Audit struct {
 
 	Success Losses // of success, as shares of runs
 	Leeway  Losses // of mean leeway, m
-	// Examples are, for each assumption, trials that the robot does as asked when only
-	// this assumption is ideal, and misses as it is; the first few.
-	Examples [][]int
+	// Examples are, for each assumption, runs of the robot that missed what is asked, in
+	// trials that it does as asked when only this assumption is ideal; the first few.
+	Examples [][]Result
 }
 
 // Losses is how a loss is shared out. Positive is a loss.
@@ -213,15 +213,15 @@ func (a *Audit) rate(success []float64, set int) Bounded {
 }
 
 // examples finds trials in which one assumption by itself makes the difference.
-func examples(k int, all []Result) [][]int {
+func examples(k int, all []Result) [][]Result {
 	const few = 4
 	sets := 1 << k
-	out := make([][]int, k)
+	out := make([][]Result, k)
 	for i := range out {
 		for t := 0; t < len(all) && len(out[i]) < few; t += sets {
 			robot, spared := &all[t+sets-1], &all[t+((sets-1)^(1<<i))]
 			if spared.Success() && !robot.Success() {
-				out[i] = append(out[i], robot.Trial)
+				out[i] = append(out[i], *robot)
 			}
 		}
 	}

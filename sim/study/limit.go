@@ -172,9 +172,9 @@ func (l *Limit) bracket() (good, bad float64, ok bool) {
 
 func (l *Limit) conclude() {
 	c, p := l.fromGood(), &l.Plan
-	word, end := "largest", "low"
+	word, to, end := "largest", "up", "low"
 	if p.Smallest {
-		word, end = "smallest", "high"
+		word, to, end = "smallest", "down", "high"
 	}
 	n := slices.IndexFunc(c, func(s Sample) bool { return !s.Meets })
 	again := -1.0
@@ -195,7 +195,7 @@ func (l *Limit) conclude() {
 		l.Text = fmt.Sprintf("At every value tried from %g to %g of %s, %s.", l.Curve[0].Value, l.Curve[len(l.Curve)-1].Value, p.Axis.Path, goal)
 	default:
 		l.Found, l.Value, l.Beyond = true, c[n-1].Value, c[n].Value
-		l.Text = fmt.Sprintf("%s = %g is the %s value up to which %s; at %g it is not shown.", p.Axis.Path, l.Value, word, goal, l.Beyond)
+		l.Text = fmt.Sprintf("%s = %g is the %s value %s to which %s; at %g it is not shown.", p.Axis.Path, l.Value, word, to, goal, l.Beyond)
 	}
 	if !l.Monotone {
 		l.Text += fmt.Sprintf(" The curve is not monotone: beyond that, %g meets it again. Look at the curve before you trust one number.", again)

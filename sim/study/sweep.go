@@ -133,3 +133,12 @@ func RunSweep(ctx context.Context, r *Runner, family Family, p SweepPlan) (*Swee
 	}
 	return s, nil
 }
+
+// Settings returns how many settings the plan has, 0 for one that cannot be.
+func (p *SweepPlan) Settings() int {
+	list, _, err := p.settings()
+	if err != nil {
+		return 0
+	}
+	return len(list)
+}
