@@ -21,10 +21,10 @@ func office() *scenario.Scenario {
 	)
 	s := scenario.New(width, height)
 	s.Name = "The long office"
-	s.Purpose = "Two corridors, dozens of rooms, hundreds of walls: from one corner to the other."
+	s.Purpose = "Two corridors, dozens of rooms, hundreds of walls: from one corner to the other, in two minutes or in ten."
 	s.Start = scenario.Start{X: 1.2, Y: 1.2, Heading: 90}
 	s.Goal.X, s.Goal.Y = 50.8, 16.2
-	s.Asked = scenario.Asked{Within: 300, Leeway: 0.05, Switches: 80}
+	s.Asked = scenario.Asked{Within: 700, Leeway: 0.05, Switches: 250}
 
 	o := drawing{s: s, dice: rand.New(rand.NewPCG(7, 2))}
 	half := (width - 3*cross) / 2

@@ -104,10 +104,11 @@ func TestEachShowsItsThing(t *testing.T) {
 			})
 		},
 		"office": func(t *testing.T) {
-			f := run(t, "office", 0)
-			if f.Status != sim.Arrived || f.Way < 53 {
-				t.Errorf("%+v", f.Outcome)
-			}
+			everySeed(t, "office", func(f finished) {
+				if f.Status != sim.Arrived || f.Way < 53 { // whether it takes two minutes or ten is a matter of chance
+					t.Errorf("%+v", f.Outcome)
+				}
+			})
 		},
 		"pillars": func(t *testing.T) {
 			everySeed(t, "pillars", func(f finished) {
@@ -163,7 +164,7 @@ func TestEachShowsItsThing(t *testing.T) {
 					d := scenario.New(12, 8).Robot
 					s.Robot.WheelLag, s.Robot.WheelDeadTime, s.Robot.WheelAccelMax = d.WheelLag, d.WheelDeadTime, d.WheelAccelMax
 				})
-				if slow.Status != sim.Arrived || quick.Status != sim.Arrived || slow.Leeway > quick.Leeway-0.05 || slow.Leeway > slow.run.Config().Asked.Leeway {
+				if slow.Status != sim.Arrived || quick.Status != sim.Arrived || slow.Leeway > quick.Leeway-0.05 || slow.Leeway >= slow.run.Config().Asked.Leeway || quick.Leeway < slow.run.Config().Asked.Leeway {
 					t.Errorf("late wheels cost no leeway: %+v, against %+v", slow.Outcome, quick.Outcome)
 				}
 			})
