@@ -130,3 +130,22 @@ func TestCoreIsFreeOfTheDOM(t *testing.T) {
 		}
 	}
 }
+
+// TestForeignFilesCarryTheirLicence checks that what others have written ships with
+// its licence, and that uPlot neither evaluates text nor writes style attributes,
+// which the pages' policy would refuse.
+func TestForeignFilesCarryTheirLicence(t *testing.T) {
+	licence, ok := assets["vendor/uplot/LICENSE.txt"]
+	if !ok || !strings.Contains(string(licence.data), "The MIT License") {
+		t.Fatal("uPlot comes without its licence")
+	}
+	code := string(assets["vendor/uplot/uPlot.esm.js"].data)
+	if !strings.Contains(code, "(v1.6.32)") {
+		t.Error("uPlot is of another version than the modules were written for")
+	}
+	for _, refused := range []string{"eval(", "new Function", `setAttribute("style"`, `setAttribute('style'`, ".innerHTML"} {
+		if strings.Contains(code, refused) {
+			t.Errorf("uPlot has %s", refused)
+		}
+	}
+}

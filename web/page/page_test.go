@@ -120,3 +120,30 @@ func TestWhereAProblemIs(t *testing.T) {
 		}
 	}
 }
+
+// TestBenchHasItsPlaces keeps what the modules of the bench look for. A place that
+// is missing would stop all of them.
+func TestBenchHasItsPlaces(t *testing.T) {
+	html := render(t, Bench(BenchView{Session: "k3f", Name: "Kit"}))
+	for _, want := range []string{
+		`id="floor"`, `id="why"`, `id="verdict"`, `id="transport"`, `id="tape"`, `id="strips"`, `id="advice"`, `id="holds"`, `id="legend"`,
+		`class="exits"`, `class="plot" role="slider"`, `class="marks"`, `class="mark-tip"`, `class="badges"`, `class="strip-panels"`,
+		`data-do="restart"`, `data-do="back"`, `data-do="play"`, `data-do="tick"`, `data-do="shadows"`,
+		`data-row="time"`, `data-row="leeway"`, `data-row="way"`, `data-row="switches"`, `data-row="farthest"`, `data-row="saturated"`, `data-row="lost"`,
+		`data-strip="speed"`, `data-strip="wheels"`, `data-strip="estimate"`, `data-strip="deviation"`, `data-strip="beams"`,
+	} {
+		if n := strings.Count(html, want); n != 1 {
+			t.Errorf("%s is there %d times", want, n)
+		}
+	}
+	// The slider's parts are not read out one by one, so nothing in it may be worth reading.
+	plot := html[strings.Index(html, `class="plot"`):strings.Index(html, `class="badges"`)]
+	if strings.Contains(plot, "<button") || strings.Contains(plot, "<a ") {
+		t.Error("there is something to press inside of the slider")
+	}
+	for _, speed := range speeds {
+		if !strings.Contains(html, `name="speed" value="`+speed.value+`"`) {
+			t.Errorf("there is no speed %s", speed.value)
+		}
+	}
+}

@@ -8,7 +8,7 @@ import { part, sentence } from './why.js';
 /** @typedef {import('../core/state.js').State} State */
 /** @typedef {import('../core/protocol.js').Advice} Told */
 
-const ABOUT = new Map([['exact', 'Where it is exact'], ['gain', 'Gain'], ['braking', 'Braking'], ['missed', 'What it can miss']]);
+const ABOUT = new Map([['exact', 'Exactness'], ['gain', 'Gain'], ['braking', 'Braking'], ['missed', 'What it can miss']]);
 
 export class Advice {
   #root;

@@ -40,6 +40,7 @@ const STYLES = {
 export class Chart {
   #spec;
   #seek;
+  #redraw;
   #place = html('div', { class: 'chart-plot' });
   /** @type {HTMLElement[]} */
   #values;
@@ -62,6 +63,7 @@ export class Chart {
   constructor(spec, room, seek, redraw) {
     this.#spec = spec;
     this.#seek = seek;
+    this.#redraw = redraw;
     this.#values = spec.lines.map(() => html('b', { class: 'n' }));
     const key = spec.lines.map((l, i) => html('span', { class: 'key' }, html('i', { class: `key-line ${l.style.replace(' ', '-')}`, 'aria-hidden': 'true' }), `${l.label} `, this.#values[i]));
     const limits = spec.limits.filter((l) => l.label).map((l) => html('span', { class: 'key' }, html('i', { class: 'key-line limit', 'aria-hidden': 'true' }), `${l.label} `, html('b', { class: 'n' }, l.at.toFixed(spec.decimals))));
@@ -91,7 +93,7 @@ export class Chart {
       },
       axes: [
         { ...axis, show: false, size: 0 },
-        { ...axis, size: room.left, gap: 6, space: 26 },
+        { ...axis, size: room.left, gap: 6, space: 20 },
       ],
       series: [{}, ...spec.lines.map((l) => ({
         label: l.label, stroke: () => colour(STYLES[l.style].stroke), width: STYLES[l.style].width, dash: STYLES[l.style].dash, points: { show: false },
@@ -120,6 +122,7 @@ export class Chart {
       this.#view = view;
       this.#taken = { version: tape.version, at: now };
       u.setData(columns(this.#spec, tape, hello.tick_s), true);
+      this.#redraw(); // the scales are there from the next frame on, and the line goes by them
     }
     if (!this.#hovered) {
       const left = u.valToPos(frame.time, 'x');
