@@ -99,6 +99,7 @@ func (f *Finished) View(o Options) (View, error) {
 	}
 	f.tellPartings(&v)
 	f.tellHow(&v, o)
+	tie(&v)
 	if err := f.draw(&v); err != nil {
 		return View{}, err
 	}
