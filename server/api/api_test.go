@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"context"
 	"encoding/json"
+	"fmt"
 	"io"
 	"log/slog"
 	"net/http"
@@ -166,6 +167,26 @@ func TestEditsAreInTheFile(t *testing.T) {
 	}
 }
 
+func TestBeamsOverTime(t *testing.T) {
+	s := newSite(t, nil)
+	id := s.opened(`{"shipped":"pocket","tick":200}`)
+	for query, want := range map[string]string{
+		"": "[0 20 40 60 80 100 120 140 160 180 200]", "?from=50": "[60 80 100 120 140 160 180 200]", "?from=50&to=99": "[60 80]", "?to=20": "[0 20]", "?from=500": "[]",
+	} {
+		status, answer, h := s.do("GET", "/api/sessions/"+id+"/beams"+query, "")
+		var b struct {
+			Ticks  []int64
+			Ranges [][]float64
+		}
+		if err := json.Unmarshal([]byte(answer), &b); err != nil || status != http.StatusOK || h.Get("Content-Type") != "application/json" {
+			t.Errorf("%s: %d %.200s", query, status, answer)
+		}
+		if fmt.Sprint(b.Ticks) != want || len(b.Ranges) != len(b.Ticks) || len(b.Ranges) > 0 && len(b.Ranges[0]) != 16 {
+			t.Errorf("%s: ticks %v, %d scans", query, b.Ticks, len(b.Ranges))
+		}
+	}
+}
+
 func TestBadRequestsGetTheirStatusAndASentence(t *testing.T) {
 	s := newSite(t, nil)
 	huge := strings.Repeat(" ", maxBody+1)
@@ -176,6 +197,10 @@ func TestBadRequestsGetTheirStatusAndASentence(t *testing.T) {
 	}{
 		{"no such session", "GET", "/api/sessions/aaaaaaaaaaaaaaaa/scenario", "", 404, "no such session"},
 		{"no such session's link", "GET", "/api/sessions/aaaaaaaaaaaaaaaa/link", "", 404, "no such session"},
+		{"no such session's beams", "GET", "/api/sessions/aaaaaaaaaaaaaaaa/beams", "", 404, "no such session"},
+		{"beams from no tick", "GET", "/api/sessions/aaaaaaaaaaaaaaaa/beams?from=now", "", 400, "whole number"},
+		{"beams from before the start", "GET", "/api/sessions/aaaaaaaaaaaaaaaa/beams?from=-1", "", 400, "whole number"},
+		{"beams to half a tick", "GET", "/api/sessions/aaaaaaaaaaaaaaaa/beams?to=1.5", "", 400, "whole number"},
 		{"an id that is none", "GET", "/api/sessions/A%27--/link", "", 404, "no such session"},
 		{"no such shipped", "POST", "/api/sessions", `{"shipped":"nothing"}`, 404, "no shipped scenario"},
 		{"nothing", "POST", "/api/sessions", `{}`, 400, "not one"},

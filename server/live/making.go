@@ -45,14 +45,7 @@ func (s *Session) install(l *laid) {
 	s.sc, s.shadows, s.tape, s.dt, s.onMap, s.floor = l.sc, l.shadows, l.tape, l.dt, l.onMap, l.floor
 	s.making, s.sought = nil, -1
 	s.tapes++
-	s.pieces = 0
-	for i := range l.floor.Solids {
-		if solid := &l.floor.Solids[i]; solid.Kind == floor.Polygon {
-			s.pieces += len(solid.Points)
-		} else {
-			s.pieces += max(1, len(solid.Points)-1)
-		}
-	}
+	s.pieces = piecesOf(l.floor.Solids)
 	s.noteMoved()
 	s.anew = true
 	s.setClock(time.Now())
@@ -91,10 +84,16 @@ func (s *Session) remake(sc *scenario.Scenario, shadows bool) error {
 	s.sc = sc // it differs from the present one in what is asked, no more
 	s.making = &making{l, s.tape.Length()}
 	s.makeOn(time.Now())
+	s.saySlow()
+	return nil
+}
+
+// saySlow tells everybody when the tape in the making takes long: its first slice has
+// been computed.
+func (s *Session) saySlow() {
 	if m := s.making; m != nil && m.length > slow*m.tape.Length() {
 		s.note(notice("this run is computed anew from its start; that takes a moment"))
 	}
-	return nil
 }
 
 // makeOn goes on with the tape in the making for a slice. Once it is as long as the

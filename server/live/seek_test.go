@@ -452,18 +452,13 @@ func TestEditLimitInThePastCountsWhatIsKept(t *testing.T) {
 // BenchmarkSeekInAnHour is a seek on a tape of an hour, shadows and all, up to the
 // frame that is sent.
 func BenchmarkSeekInAnHour(b *testing.B) {
-	sc := room(b)
-	sc.Asked.Within = 3600
-	for i := range 120 {
-		sc.Edits = append(sc.Edits, scenario.Edit{Tick: int64(i * 6000), What: "goal", To: scenario.Point{7 - float64(i%2)*6, 3}})
-	}
-	bench := newBench(b, sc, Opening{Tick: 720_000})
+	bench := newBench(b, longRun(b, 720_000), Opening{Tick: 720_000})
 	v := bench.join()
 	if n := bench.length(); n < 700_000 {
 		b.Fatalf("length %d", n)
 	}
 	r := rand.New(rand.NewPCG(1, 1))
-	var worst time.Duration
+	var took []time.Duration
 	for b.Loop() {
 		at := time.Now()
 		tick := r.Int64N(bench.length())
@@ -473,8 +468,10 @@ func BenchmarkSeekInAnHour(b *testing.B) {
 			bench.s.nextFrame = at
 			bench.s.tell(at)
 		})
-		worst = max(worst, time.Since(at))
+		took = append(took, time.Since(at))
 		v.take()
 	}
-	b.ReportMetric(float64(worst.Milliseconds()), "worst-ms")
+	slices.Sort(took)
+	b.ReportMetric(took[len(took)*95/100].Seconds()*1000, "p95-ms")
+	b.ReportMetric(took[len(took)-1].Seconds()*1000, "worst-ms")
 }

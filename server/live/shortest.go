@@ -21,6 +21,18 @@ const (
 	followPieces, mostPieces = 3_000, 10_000
 )
 
+// piecesOf counts straight pieces of wall and sides, and discs.
+func piecesOf(solids []floor.Solid) (n int) {
+	for i := range solids {
+		if s := &solids[i]; s.Kind == floor.Polygon {
+			n += len(s.Points)
+		} else {
+			n += max(1, len(s.Points)-1)
+		}
+	}
+	return n
+}
+
 // Why no shortest way is known.
 const (
 	waySoon     = "it is being worked out"

@@ -9,6 +9,8 @@ import (
 	"time"
 
 	"github.com/google/go-cmp/cmp"
+
+	"leeway/sim/scenario"
 )
 
 // settle lets frames that are due go out.
@@ -157,6 +159,66 @@ func TestTapeGoesOnWithoutGapsWhoeverComesAndGoes(t *testing.T) {
 		}
 		if d := cmp.Diff([]any{g.Rows, g.Spans, g.Marks}, []any{steady.rows, steady.spans, steady.marks}); d != "" {
 			t.Errorf("who comes late hears another tape: %s", d)
+		}
+	})
+}
+
+// longRun is a room in which the robot is sent to and fro for so many ticks.
+func longRun(t testing.TB, ticks int64) *scenario.Scenario {
+	sc := room(t)
+	sc.Asked.Within = 3600
+	for i := range ticks / 4000 {
+		sc.Edits = append(sc.Edits, scenario.Edit{Tick: 4000 * i, What: "goal", To: scenario.Point{7 - float64(i%2)*6, 3}})
+	}
+	return sc
+}
+
+func TestALongTapeIsToldMoreCoarsely(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newBench(t, longRun(t, 90_000), Opening{Tick: 79_900})
+		v := b.join()
+		b.say(v, `{"kind":"shadows","on":false}`)
+		settle()
+		var f follower
+		f.hear(t, v.take())
+		every := func() int64 {
+			late := b.join()
+			synctest.Wait()
+			g := greet(t, last(t, late.take(), "hello")).Tape
+			b.in(func() { b.s.leaves(late) })
+			f.hear(t, v.take())
+			if d := cmp.Diff([]any{g.Rows, g.Spans, g.Marks}, []any{f.rows, f.spans, f.marks}); d != "" || f.gaps > 0 {
+				t.Fatalf("%d gaps; who comes late hears another tape: %s", f.gaps, d)
+			}
+			for i, row := range g.Rows {
+				if int64(row[0]) != int64(i)*g.Every {
+					t.Fatalf("row %d of every %d is of tick %v", i, g.Every, row[0])
+				}
+			}
+			if n := int64(len(g.Rows)); n > maxRowsTold || n != g.Length/g.Every+1 {
+				t.Fatalf("%d rows of a tape of %d", n, g.Length)
+			}
+			return g.Every
+		}
+		if e := every(); e != 20 {
+			t.Errorf("a row every %d ticks", e)
+		}
+		b.say(v, `{"kind":"play"}`)
+		for range 60 {
+			time.Sleep(20 * time.Millisecond)
+			synctest.Wait()
+			f.hear(t, v.take())
+		}
+		if e := every(); e != 40 || b.length() < 80_050 {
+			t.Errorf("a row every %d ticks of %d", e, b.length())
+		}
+		// Cut to be short, it is told finely again.
+		b.shown(v, 4000)
+		b.say(v, `{"kind":"drag","what":"goal","x":7,"y":2,"done":true}`)
+		settle()
+		f.hear(t, v.take())
+		if e := every(); e != 20 {
+			t.Errorf("a row every %d ticks", e)
 		}
 	})
 }

@@ -27,7 +27,7 @@ func open(t *testing.T, path string) *Store {
 var when = time.UnixMilli(1_700_000_000_123)
 
 func one() Session {
-	return Session{ID: "abc", Scenario: []byte(`{"leeway":1}`), Tick: 42, Playing: true, Speed: 0.25, ByHand: true, Updated: when}
+	return Session{ID: "abc", Scenario: []byte(`{"leeway":1}`), Tick: 42, Length: 99, Shadows: true, Playing: true, Speed: 0.25, ByHand: true, Updated: when}
 }
 
 func TestSavedSessionComesBackFromAnotherOpen(t *testing.T) {
@@ -59,7 +59,7 @@ func TestSaveWithoutTextKeepsTheText(t *testing.T) {
 	if err := s.Save(t.Context(), one()); err != nil {
 		t.Fatal(err)
 	}
-	v.Tick, v.Playing = 99, false
+	v.Tick, v.Length, v.Shadows, v.Playing = 99, 120, false, false
 	if err := s.Save(t.Context(), v); err != nil {
 		t.Fatal(err)
 	}
@@ -69,6 +69,34 @@ func TestSaveWithoutTextKeepsTheText(t *testing.T) {
 	}
 	v.Scenario = one().Scenario
 	if d := cmp.Diff(v, got); d != "" {
+		t.Error(d)
+	}
+}
+
+// A file of the first version, which knew of no tapes: a session stood at its end.
+func TestFileOfTheFirstVersionIsBroughtUpToDate(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "s.db")
+	db, err := sql.Open("sqlite", path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, q := range []string{
+		migrations[0], `PRAGMA user_version = 1`,
+		`INSERT INTO sessions (id, scenario, tick, playing, speed, by_hand, updated) VALUES ('abc', x'7b7d', 42, 1, 2, 1, 1700000000123)`,
+	} {
+		if _, err := db.Exec(q); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if err := db.Close(); err != nil {
+		t.Fatal(err)
+	}
+	got, err := open(t, path).Load(t.Context(), "abc")
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := Session{ID: "abc", Scenario: []byte("{}"), Tick: 42, Length: 42, Shadows: true, Playing: true, Speed: 2, ByHand: true, Updated: when}
+	if d := cmp.Diff(want, got); d != "" {
 		t.Error(d)
 	}
 }
