@@ -46,6 +46,14 @@ func page(t testing.TB, sc *scenario.Scenario, o report.Options) string {
 	return b.String()
 }
 
+func TestCautionNamesWhoDecides(t *testing.T) {
+	for _, s := range []string{"nothing about the safety of people", "ISO 13855", "ISO 3691-4", "ISO 13482", "local codes", "competent people on site"} {
+		if !strings.Contains(report.Caution, s) {
+			t.Errorf("no %q", s)
+		}
+	}
+}
+
 func TestPageIsAFunctionOfItsArguments(t *testing.T) {
 	first := page(t, shipped(t, "lag"), options)
 	if again := page(t, shipped(t, "lag"), options); again != first {
@@ -89,7 +97,7 @@ func TestPageSaysWhatHappened(t *testing.T) {
 		}
 		set.Finish()
 		want := []string{
-			sc.Name, sc.Purpose, set.Run(shadow.Robot).Outcome().Reason, "ISO 13855", "ISO 3691-4", "ISO 13482", "competent people on site",
+			sc.Name, sc.Purpose, set.Run(shadow.Robot).Outcome().Reason, report.Caution,
 			"3 April 2031", "v1.2.3", fmt.Sprintf("within %g s, keeping %.2f m of leeway", sc.Asked.Within, sc.Asked.Leeway),
 			"The seed is " + fmt.Sprint(sc.Seed),
 		}

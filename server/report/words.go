@@ -187,14 +187,6 @@ func percent(share float64) string {
 	return fmt.Sprintf("%.0f %%", 100*share)
 }
 
-// capital begins a sentence.
-func capital(s string) string {
-	if s == "" {
-		return s
-	}
-	return strings.ToUpper(s[:1]) + s[1:]
-}
-
 // Caution is said wherever a run is judged.
 const Caution = "A simulation says nothing about the safety of people. Protective stops, speeds and separation distances are the business of " +
 	"standards such as ISO 13855, ISO 3691-4 and ISO 13482, of local codes, and of competent people on site."
