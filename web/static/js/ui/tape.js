@@ -17,6 +17,8 @@ import { part } from './why.js';
 /** What a step by key is, s. */
 const STEP = 0.1;
 const FAR = 1;
+/** Room that a badge needs beside the end of its lane, px. */
+const BADGE = 92;
 
 /**
  * What the tape tells the bench.
@@ -40,6 +42,8 @@ export class TapeView {
   /** @type {timeline.Shown} */
   #shown = { from: 0, to: 1 };
   #width = 0;
+  /** Of the plot and what is free to its right. */
+  #room = 0;
   #painted = '';
   #fresh = 0;
   /** @type {State | null} */
@@ -124,6 +128,7 @@ export class TapeView {
   #measure(few) {
     const { width } = this.#plot.getBoundingClientRect();
     this.#width = Math.floor(width);
+    this.#room = this.#badges.clientWidth;
     vary(this.#root, '--tape-height', `${height(few)}px`);
     this.#paint.size(this.#width, height(few), Math.min(devicePixelRatio || 1, 3));
   }
@@ -165,6 +170,7 @@ export class TapeView {
       say(badge, `${clock(end.tick * hello.tick_s, 0)} ${word}`);
       set(badge, 'title', end.text);
       set(badge, 'data-tone', word === 'there' ? 'done' : 'fail');
+      set(badge, 'data-inside', x + BADGE > this.#room);
       vary(badge, 'transform', `translate(${Math.round(x + 6)}px, ${this.#paint.laneTop(who, few)}px)`);
     });
   }
