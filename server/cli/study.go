@@ -2,7 +2,6 @@ package cli
 
 import (
 	"bytes"
-	"errors"
 	"fmt"
 	"io"
 	"math"
@@ -117,9 +116,6 @@ func (s *session) level() float64 {
 func (s *session) head(kind string, err error) studies.Head {
 	return s.subject.Head(kind, err == nil, s.runner.Done(), s.level())
 }
-
-// stopped reports whether a study's error only says that it was stopped.
-func (s *session) stopped(err error) bool { return err != nil && errors.Is(err, s.cmd.Context().Err()) }
 
 // finish writes what was asked for: the view as JSON or else in words, the table and
 // the picture. err is that of a study that was stopped, and is returned at last.

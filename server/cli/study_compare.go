@@ -24,8 +24,8 @@ All take the seed of the first. One that says nothing about what varies takes th
 the first too, so that starts, goals and all else that is drawn are the same.
 
 The comparison is by pairs of trials: how many only the one does as asked and how many
-only the other, with the exact test of McNemar, and the difference in success and in mean
-leeway with bootstrap intervals.
+only the other, with the exact test of McNemar, and the difference in success (with
+an interval after Newcombe) and in mean leeway (by bootstrap).
 
 ` + variesHelp,
 		Example: `  leeway compare ten-beams.json twenty-beams.json
@@ -46,10 +46,8 @@ leeway with bootstrap intervals.
 					return err
 				}
 				sc.Seed = s.subject.Scenario.Seed
-				own := sc.Clone()
-				own.Vary = s.subject.Scenario.Clone().Vary
-				if isZero := len(sc.Vary.Start)+len(sc.Vary.Goal)+len(sc.Vary.Numbers)+len(sc.Vary.Solids)+len(sc.Vary.Movers) == 0 && !sc.Vary.SameSeed && sc.Vary.Turn == 0; isZero {
-					sc = own
+				if sc.Vary.Empty() {
+					sc.Vary = s.subject.Scenario.Clone().Vary
 				}
 				t, err := sc.Trials()
 				if err != nil {

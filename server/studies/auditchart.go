@@ -78,7 +78,7 @@ func (s *Subject) AuditChart(a *study.Audit) []byte {
 // pairs draws what pairs cost together.
 func (s *Subject) pairs(p *pen, a *study.Audit, order []int, x0, y0 float64) {
 	p.text(x0, y0, 14, "start", 700, inkColour, "What costs only together")
-	p.text(x0, y0+17, 11.5, "start", 400, softColour, "Points lost by a pair beyond what each loses alone.")
+	p.text(x0, y0+17, 11.5, "start", 400, softColour, "Points a pair loses beyond what each does, averaged over what else is real.")
 	const cell = 44
 	left := x0 + 96
 	largest := 0.01
@@ -90,6 +90,11 @@ func (s *Subject) pairs(p *pen, a *study.Audit, order []int, x0, y0 float64) {
 	for r, i := range order {
 		y := y0 + 40 + cell*float64(r)
 		p.text(left-8, y+cell/2+4, 11.5, "end", 700, inkColour, a.Assumptions[i].Name)
+		if r < len(order)-1 { // the last has no column
+			fmt.Fprintf(&p.b, `<g transform="translate(%s %s) rotate(-40)">`, r1(left+cell*(float64(r)+0.6)), r1(y0+54+cell*float64(len(order))))
+			p.text(0, 0, 11.5, "end", 700, inkColour, a.Assumptions[i].Name)
+			p.b.WriteString("</g>\n")
+		}
 		for c, j := range order[:r] {
 			v := a.Success.Pairs[max(i, j)][min(i, j)]
 			u := math.Abs(v) / largest

@@ -57,7 +57,7 @@ func chartOf(title, note, label string, points []curve, target, mark float64) []
 	}
 	if !math.IsNaN(mark) {
 		p.line(p.x(mark), p.y0, p.x(mark), p.y0+p.h, inkColour, 1.2, `stroke-dasharray="2 3"`)
-		p.text(p.x(mark)+6, p.y0+14, 12, "start", 700, inkColour, trimmed(mark, 6))
+		p.text(p.x(mark)+6, p.y0+p.h-8, 12, "start", 700, inkColour, trimmed(mark, 6))
 	}
 	var d strings.Builder
 	for i, c := range points {
@@ -94,7 +94,7 @@ func (s *Subject) label(path string) string {
 	if err != nil {
 		return path
 	}
-	if f.Unit == "" {
+	if f.Unit == "" || f.Unit == f.Label {
 		return f.Label
 	}
 	return f.Label + " (" + f.Unit + ")"

@@ -79,8 +79,9 @@ func (t *Trials) With(settings ...Setting) (*Trials, error) {
 
 // Varies reports whether two trials may differ at all.
 func (t *Trials) Varies() bool {
-	v := &t.vary
-	return !v.SameSeed || len(v.Start)+len(v.Goal)+len(v.Numbers)+len(v.Solids)+len(v.Movers) > 0 || v.Turn > 0
+	v := t.vary
+	v.SameSeed = false
+	return !t.vary.SameSeed || !v.Empty()
 }
 
 // Base returns what all trials share, as a scenario of its own. Read only.

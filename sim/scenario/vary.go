@@ -80,6 +80,11 @@ func (r Region) form() string {
 
 func (v Varied) form() string { return v.Kind }
 
+// Empty reports whether nothing varies but the seed.
+func (v *Vary) Empty() bool {
+	return !v.SameSeed && len(v.Start)+len(v.Goal)+len(v.Numbers)+len(v.Solids)+len(v.Movers) == 0 && v.Turn == 0
+}
+
 // clone returns a deep copy.
 func (v Vary) clone() Vary {
 	v.Start, v.Goal = cloneOf(v.Start), cloneOf(v.Goal)

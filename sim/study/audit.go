@@ -57,7 +57,8 @@ type Losses struct {
 	Shares []Bounded // Shapley values with bootstrap intervals; they add up to Whole
 	Alone  []float64 // from making one assumption real and no other
 	Rest   float64   // of Whole, what Alone leaves unexplained
-	// Pairs[i][j], i > j, is what the two lose together beyond what each loses alone.
+	// Pairs[i][j], i > j, is what the two lose together beyond what each loses, on
+	// average over what else is real (stat.Interactions).
 	Pairs [][]float64
 }
 
@@ -188,14 +189,14 @@ func lossesOf(k int, y []float64, confidence float64) (means []float64, l Losses
 		}
 	})
 	each, rest := stat.Alone(k, means)
-	together := stat.Dividends(k, means)
+	together := stat.Interactions(k, means)
 	l.Rest = 0 - rest
 	for i := range k {
 		l.Shares = append(l.Shares, Bounded{0 - phi[i], in[i]}) // 0 − x, so that nothing is 0 and not −0
 		l.Alone = append(l.Alone, 0-each[i])
 		row := make([]float64, i)
 		for j := range row {
-			row[j] = 0 - together[1<<i|1<<j]
+			row[j] = 0 - together[i][j]
 		}
 		l.Pairs = append(l.Pairs, row)
 	}

@@ -24,7 +24,7 @@ func (a *Axis) at(u float64) float64 {
 	if a.Whole {
 		return a.Low + math.Floor(min(u*(a.High-a.Low+1), a.High-a.Low))
 	}
-	// to nine digits, so that settings read as a person would write them
+	// to six digits, so that settings read as a person would write them
 	return min(a.High, max(a.Low, digits(a.Low+u*(a.High-a.Low))))
 }
 
@@ -47,7 +47,7 @@ func (a *Axis) grid() []float64 {
 }
 
 func digits(x float64) float64 {
-	y, err := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 9, 64), 64)
+	y, err := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 6, 64), 64)
 	if err != nil {
 		return x
 	}

@@ -20,8 +20,8 @@ type Pair struct {
 	OnlyFirst  int     // trials that only the first does as asked
 	OnlyOther  int     // trials that only the other does
 	P          float64 // exact McNemar: how likely such an imbalance is between equals
-	Difference Bounded // in the share of success, other − first; bootstrap over trials
-	Leeway     Bounded // mean difference of leeways, other − first, m; likewise
+	Difference Bounded // in the share of success, other − first; stat.NewcombePaired
+	Leeway     Bounded // mean difference of leeways, other − first, m; bootstrap over trials
 }
 
 // RunCompare runs trials 0 to n−1 of every source.
@@ -55,27 +55,29 @@ func RunCompare(ctx context.Context, r *Runner, names []string, sources []Source
 
 func pair(a, b []Result, other int, confidence float64) Pair {
 	p := Pair{Other: other}
-	success, leeway := make([]float64, len(a)), make([]float64, len(a))
+	leeway, both := make([]float64, len(a)), 0
 	for i := range a {
 		switch x, y := a[i].Success(), b[i].Success(); {
 		case x && !y:
 			p.OnlyFirst++
-			success[i] = -1
 		case y && !x:
 			p.OnlyOther++
-			success[i] = 1
+		case x:
+			both++
 		}
 		leeway[i] = b[i].Margin() - a[i].Margin()
 	}
 	p.P = stat.McNemar(p.OnlyFirst, p.OnlyOther)
-	in := stat.Bootstrap(uint64(other), len(a), 2, confidence, func(rows []int, out []float64) {
-		out[0], out[1] = 0, 0
+	in := stat.Bootstrap(uint64(other), len(a), 1, confidence, func(rows []int, out []float64) {
+		out[0] = 0
 		for _, r := range rows {
-			out[0] += success[r] / float64(len(rows))
-			out[1] += leeway[r] / float64(len(rows))
+			out[0] += leeway[r] / float64(len(rows))
 		}
 	})
-	p.Difference = Bounded{stat.Mean(success), in[0]}
-	p.Leeway = Bounded{stat.Mean(leeway), in[1]}
+	p.Difference = Bounded{
+		float64(p.OnlyOther-p.OnlyFirst) / float64(len(a)),
+		stat.NewcombePaired(both, p.OnlyOther, p.OnlyFirst, len(a)-both-p.OnlyFirst-p.OnlyOther, confidence),
+	}
+	p.Leeway = Bounded{stat.Mean(leeway), in[0]}
 	return p
 }

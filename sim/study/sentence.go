@@ -32,7 +32,11 @@ func (a *Audit) Sentence() string {
 	top := order[0]
 	s += fmt.Sprintf("Of the %d %s lost, %d %s from %s", lost, plural(lost), points(l.Shares[top].Value), verb(points(l.Shares[top].Value), "comes", "come"), a.Assumptions[top].Real)
 	if other, part := a.partner(top); part >= 0.005 {
-		s += fmt.Sprintf(", %d of %s only together with %s", points(part), verb(points(l.Shares[top].Value), "it", "them"), a.Assumptions[other].Real)
+		of := fmt.Sprintf("%d of %s", points(part), verb(points(l.Shares[top].Value), "it", "them"))
+		if points(part) == points(l.Shares[top].Value) {
+			of = "all"
+		}
+		s += fmt.Sprintf(", %s only together with %s", of, a.Assumptions[other].Real)
 	}
 	var more []string
 	for _, i := range order[1:] {

@@ -56,3 +56,24 @@ func Dividends(k int, v []float64) []float64 {
 	}
 	return d
 }
+
+// Interactions returns how much each pair i > j adds together beyond what the two
+// add each, on average over what else is in: Shapley's interaction index (M. Grabisch
+// and M. Roubens, International Journal of Game Theory 28, 1999), which is the sum of
+// the dividends of the sets that hold both, each divided by its size less one.
+func Interactions(k int, v []float64) [][]float64 {
+	out := make([][]float64, k)
+	for i := range out {
+		out[i] = make([]float64, i)
+	}
+	for s, d := range Dividends(k, v) {
+		for i := range out {
+			for j := range out[i] {
+				if s>>i&1 == 1 && s>>j&1 == 1 {
+					out[i][j] += d / float64(bits.OnesCount(uint(s))-1)
+				}
+			}
+		}
+	}
+	return out
+}

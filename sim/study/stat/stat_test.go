@@ -43,6 +43,37 @@ func TestIntervalsOfSharesCover(t *testing.T) {
 	}
 }
 
+// Simulated: two designs on the same trials, of which most that fail with the one fail
+// with the other.
+func TestPairedDifferenceCovers(t *testing.T) {
+	const rounds, n = 2000, 50
+	held := 0
+	for i := range rounds {
+		s := chance.New(6, "pairs", i)
+		var count [2][2]int
+		for range n {
+			hard := s.Uniform() < 0.2
+			first, other := 0, 0
+			if s.Uniform() < 0.95 && !hard {
+				first = 1
+			}
+			if s.Uniform() < 0.8 && !hard {
+				other = 1
+			}
+			count[first][other]++
+		}
+		if NewcombePaired(count[1][1], count[1][0], count[0][1], count[0][0], 0.95).Holds(0.8 * (0.95 - 0.8)) {
+			held++
+		}
+	}
+	if c := float64(held) / rounds; c < 0.93 || c > 0.985 {
+		t.Errorf("covers with %.3f", c)
+	}
+	if in := NewcombePaired(60, 0, 0, 0, 0.95); in.Low > -0.05 || in.High < 0.05 || in.Low < -0.07 {
+		t.Errorf("sixty pairs without a failure: %v", in)
+	}
+}
+
 // Simulated: intervals of quantiles cover at least as often as they say, and the
 // bootstrap of a mean nearly so.
 func TestIntervalsOfNumbersCover(t *testing.T) {
@@ -176,6 +207,31 @@ func TestShapleyAxioms(t *testing.T) {
 			}
 			if math.Abs(share-phi[i]) > 1e-12 {
 				t.Fatalf("by dividends player %d has %v, by Shapley %v", i, share, phi[i])
+			}
+		}
+	})
+}
+
+// The interaction index by its other definition: the mean of what j changes about what
+// i adds, with the weights that a random order gives.
+func TestInteractions(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		k := rapid.IntRange(2, 6).Draw(t, "players")
+		v := rapid.SliceOfN(rapid.Float64Range(-1, 1), 1<<k, 1<<k).Draw(t, "values")
+		factorial := func(n int) float64 { return math.Gamma(float64(n + 1)) }
+		got := Interactions(k, v)
+		for i := range k {
+			for j := range i {
+				want, a, b := 0.0, 1<<i, 1<<j
+				for s := range v {
+					if s&a == 0 && s&b == 0 {
+						n := bits.OnesCount(uint(s))
+						want += factorial(k-n-2) * factorial(n) / factorial(k-1) * (v[s|a|b] - v[s|a] - v[s|b] + v[s])
+					}
+				}
+				if math.Abs(got[i][j]-want) > 1e-9 {
+					t.Fatalf("%d and %d: %v, want %v", i, j, got[i][j], want)
+				}
 			}
 		}
 	})
