@@ -386,7 +386,7 @@ func Bench(v BenchView) templ.Component {
 					return templ_7745c5c3_Err
 				}
 			}
-			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 34, "<span class=\"lane-name gap\">leeway, m</span></div><div class=\"plot\" role=\"slider\" tabindex=\"0\" aria-label=\"Moment that is shown\" aria-valuemin=\"0\" aria-valuemax=\"0\" aria-valuenow=\"0\" aria-describedby=\"hint\"><canvas aria-hidden=\"true\"></canvas><div class=\"ahead\"></div><div class=\"now\"></div></div><div class=\"badges\"></div><span class=\"asked-label\" aria-hidden=\"true\"></span><div class=\"marks\" role=\"group\" aria-label=\"Marks on the tape\"></div><div class=\"mark-tip\" aria-hidden=\"true\" hidden></div></div></section></div><section id=\"strips\" class=\"strips\" aria-label=\"Strips\"><div class=\"strip-bar\" role=\"group\" aria-label=\"Strips under the tape\">")
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 34, "<span class=\"lane-name gap\">leeway, m</span></div><div class=\"plot\" role=\"slider\" tabindex=\"0\" aria-label=\"Moment that is shown\" aria-valuemin=\"0\" aria-valuemax=\"0\" aria-valuenow=\"0\" aria-describedby=\"hint\"><canvas aria-hidden=\"true\"></canvas><div class=\"ahead\"></div><div class=\"hover\" hidden><span></span></div><div class=\"now\"></div></div><div class=\"badges\"></div><span class=\"asked-label\" aria-hidden=\"true\"></span><div class=\"marks\" role=\"group\" aria-label=\"Marks on the tape\"></div><div class=\"mark-tip\" aria-hidden=\"true\" hidden></div></div></section></div><section id=\"strips\" class=\"strips\" aria-label=\"Strips\"><div class=\"strip-bar\" role=\"group\" aria-label=\"Strips under the tape\">")
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
@@ -398,7 +398,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var21 string
 				templ_7745c5c3_Var21, templ_7745c5c3_Err = templruntime.NewAttributeExpression(s.key).Resolve(ctx)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 170, Col: 60}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 171, Col: 60}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var21)
 				if templ_7745c5c3_Err != nil {
@@ -411,7 +411,7 @@ func Bench(v BenchView) templ.Component {
 				var templ_7745c5c3_Var22 string
 				templ_7745c5c3_Var22, templ_7745c5c3_Err = templ.JoinStringErrs(s.label)
 				if templ_7745c5c3_Err != nil {
-					return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 170, Col: 93}
+					return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 171, Col: 93}
 				}
 				_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var22))
 				if templ_7745c5c3_Err != nil {
@@ -482,7 +482,7 @@ func dialogs(v BenchView) templ.Component {
 		var templ_7745c5c3_Var24 string
 		templ_7745c5c3_Var24, templ_7745c5c3_Err = templruntime.NewAttributeExpression(saveURL(v.Session)).ResolveURL(ctx)
 		if templ_7745c5c3_Err != nil {
-			return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 203, Col: 68}
+			return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 204, Col: 68}
 		}
 		_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ_7745c5c3_Var24)
 		if templ_7745c5c3_Err != nil {
@@ -508,7 +508,7 @@ func dialogs(v BenchView) templ.Component {
 			var templ_7745c5c3_Var25 string
 			templ_7745c5c3_Var25, templ_7745c5c3_Err = templ.JoinStringErrs(k.key)
 			if templ_7745c5c3_Err != nil {
-				return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 224, Col: 26}
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 225, Col: 26}
 			}
 			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var25))
 			if templ_7745c5c3_Err != nil {
@@ -521,7 +521,7 @@ func dialogs(v BenchView) templ.Component {
 			var templ_7745c5c3_Var26 string
 			templ_7745c5c3_Var26, templ_7745c5c3_Err = templ.JoinStringErrs(k.does)
 			if templ_7745c5c3_Err != nil {
-				return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 224, Col: 51}
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `web/page/bench.templ`, Line: 225, Col: 51}
 			}
 			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var26))
 			if templ_7745c5c3_Err != nil {

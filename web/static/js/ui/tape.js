@@ -33,6 +33,8 @@ export class TapeView {
   #plot;
   #ahead;
   #now;
+  #hover;
+  #hoverTime;
   #badges;
   #asked;
   #marks;
@@ -68,6 +70,8 @@ export class TapeView {
     if (!(canvas instanceof HTMLCanvasElement)) throw new Error('the tape has no canvas');
     this.#ahead = element(root, '.ahead');
     this.#now = element(root, '.now');
+    this.#hover = element(root, '.hover');
+    this.#hoverTime = part(root, '.hover span');
     this.#badges = part(root, '.badges');
     this.#asked = element(root, '.asked-label');
     this.#marks = new Marks(element(root, '.marks'), element(root, '.mark-tip'), (tick) => told.seek(tick, false));
@@ -191,7 +195,11 @@ export class TapeView {
       this.#held = true;
       seek(event, true);
     });
-    plot.addEventListener('pointermove', (event) => this.#held && seek(event, true));
+    plot.addEventListener('pointermove', (event) => {
+      if (this.#held) seek(event, true);
+      this.#point(event.pointerType === 'mouse' && !this.#held ? at(event) : null);
+    });
+    plot.addEventListener('pointerleave', () => this.#point(null));
     plot.addEventListener('pointerup', (event) => {
       if (!this.#held) return;
       this.#held = false;
@@ -215,6 +223,18 @@ export class TapeView {
     for (const button of document.querySelectorAll('[data-axis]')) {
       button.addEventListener('click', () => this.#zoomAtNow(Number(button.getAttribute('data-axis'))));
     }
+  }
+
+  /**
+   * Says which moment is under the pointer.
+   * @param {number | null} share of the width
+   */
+  #point(share) {
+    set(this.#hover, 'hidden', share === null);
+    if (share === null) return;
+    const { from, to } = this.#shown;
+    say(this.#hoverTime, clock(from + share * (to - from), to - from < 30 ? 2 : 1));
+    vary(this.#hover, 'transform', `translateX(${Math.round(share * this.#width)}px)`);
   }
 
   /** @param {KeyboardEvent} event */

@@ -48,6 +48,7 @@ export class Why {
     if (frame.why !== this.#said) {
       this.#said = frame.why;
       this.#why.replaceChildren(...sentence(frame.why));
+      set(this.#why, 'title', frame.why);
     }
     if (frame.exits !== this.#drawn) {
       this.#drawn = frame.exits;
