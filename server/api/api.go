@@ -1,5 +1,5 @@
-// Package api is what the server answers over HTTP: pages, sessions, files and
-// links. It turns requests into calls of package live and package scenario, and
+// Package api is what the server answers over HTTP: pages, sessions, files, links,
+// reports and replays. It turns requests into calls of package live and package scenario, and
 // what those return into pages and JSON.
 //
 // # Basics
@@ -43,9 +43,14 @@ type Config struct {
 	Log   *slog.Logger // required
 	// Creations is how many sessions one client may open in a minute; 0 means 120.
 	Creations int
+	Version   string           // of this program, for reports
+	Now       func() time.Time // for the date of a report; default time.Now
 }
 
-type server struct{ Config }
+type server struct {
+	Config
+	telling chan struct{} // of capacity 1: held by who makes a report or a replay
+}
 
 const (
 	// maxBody is the largest request accepted, bytes: a scenario file of the
@@ -60,7 +65,10 @@ func New(c Config) http.Handler {
 	if c.Creations == 0 {
 		c.Creations = 120
 	}
-	s := &server{c}
+	if c.Now == nil {
+		c.Now = time.Now
+	}
+	s := &server{c, make(chan struct{}, 1)}
 	go gallery() // made before the first person asks
 
 	r := chi.NewRouter()
@@ -73,6 +81,8 @@ func New(c Config) http.Handler {
 		r.Use(inTime)
 		r.Get("/", s.start)
 		r.Get("/bench/{session}", s.bench)
+		r.Get("/report/{session}", s.report)
+		r.Get("/replay/{session}", s.replay)
 		r.Get("/open", s.open)
 		r.Get("/healthz", s.health)
 		r.Get("/schema.json", s.schema)

@@ -438,7 +438,7 @@ func TestFileNames(t *testing.T) {
 		"The pocket": "the-pocket.json", "../../etc/passwd": "etc-passwd.json", "": "scenario.json", "Büro 2": "büro-2.json",
 		strings.Repeat("long ", 50): "long-long-long-long-long-long-long-long-long-long-long-long-.json",
 	} {
-		if got := fileName(in); got != want {
+		if got := fileName(in, ".json"); got != want {
 			t.Errorf("%q became %q", in, got)
 		}
 	}

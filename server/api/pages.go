@@ -25,7 +25,8 @@ import (
 // is not half a page.
 func (s *server) page(w http.ResponseWriter, r *http.Request, status int, c templ.Component) {
 	var b bytes.Buffer
-	if err := c.Render(r.Context(), &b); err != nil {
+	// A page may be about the request having taken too long.
+	if err := c.Render(context.WithoutCancel(r.Context()), &b); err != nil {
 		s.Log.Error("a page cannot be drawn", "path", r.URL.Path, "error", err)
 		http.Error(w, sentence(errInternal.Error()), http.StatusInternalServerError)
 		return

@@ -113,7 +113,7 @@ func (s *server) file(w http.ResponseWriter, r *http.Request) {
 		return
 	}
 	w.Header().Set("Content-Type", "application/json")
-	w.Header().Set("Content-Disposition", mime.FormatMediaType("attachment", map[string]string{"filename": fileName(sc.Name)}))
+	w.Header().Set("Content-Disposition", mime.FormatMediaType("attachment", map[string]string{"filename": fileName(sc.Name, ".json")}))
 	w.Write(sc.Print())
 }
 
@@ -143,13 +143,13 @@ func (s *server) beams(w http.ResponseWriter, r *http.Request) {
 }
 
 // fileName makes a file name of the name of a scenario: "The pocket" → "the-pocket.json".
-func fileName(name string) string {
+func fileName(name, ending string) string {
 	words := strings.FieldsFunc(strings.ToLower(name), func(r rune) bool { return !unicode.IsLetter(r) && !unicode.IsDigit(r) })
 	base := []rune(strings.Join(words, "-"))
 	if len(base) == 0 {
 		base = []rune("scenario")
 	}
-	return string(base[:min(len(base), 60)]) + ".json"
+	return string(base[:min(len(base), 60)]) + ending
 }
 
 type linkAnswer struct {
@@ -166,11 +166,7 @@ func (s *server) link(w http.ResponseWriter, r *http.Request) {
 		s.fail(w, r, err)
 		return
 	}
-	scheme := "http"
-	if r.TLS != nil {
-		scheme = "https"
-	}
 	data := sc.Encode()
-	url := scheme + "://" + r.Host + "/open#" + data
+	url := origin(r) + "/open#" + data
 	s.answer(w, http.StatusOK, linkAnswer{url, data, len(url), len(url) > scenario.LongLink})
 }

@@ -27,7 +27,9 @@ type Config struct {
 
 	Log   *slog.Logger     // default: none
 	Ready func(url string) // called once it listens
-	Now   func() time.Time // for the age of what is kept; default time.Now
+	Now   func() time.Time // for the age of what is kept and the date of reports; default time.Now
+
+	Version string // of this program, for reports
 
 	Idle      time.Duration // see live.Options
 	Sessions  int           // see live.Options
@@ -88,6 +90,7 @@ func Run(ctx context.Context, c Config) error {
 	server := &http.Server{
 		Handler: api.New(api.Config{
 			Lab: lab, Hosts: api.NewHosts(listening, c.Hosts), Log: c.Log, Creations: c.Creations,
+			Version: c.Version, Now: c.Now,
 		}),
 		// No WriteTimeout: answers have their own, and streams have none.
 		ReadHeaderTimeout: 10 * time.Second,

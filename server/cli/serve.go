@@ -16,7 +16,7 @@ import (
 )
 
 func newServe() *cobra.Command {
-	var c app.Config
+	c := app.Config{Version: version()}
 	verbose := false
 	cmd := &cobra.Command{
 		Use:   "serve",
