@@ -54,7 +54,7 @@ func (w *watch) look(s *Set, who Who, d float64) (Parting, bool) {
 	if d < s.hull/2 {
 		w.drifted = false
 	}
-	if dwell := max(leastDwell, slowestExit(robot), slowestExit(shadow)); differs && !w.decided && float64(s.tick-w.since)*s.dt > dwell {
+	if least := max(leastDwell, dwell(robot), dwell(shadow)); differs && !w.decided && float64(s.tick-w.since)*s.dt > least {
 		w.decided = true
 		return s.parting(who, w.since, false, d), true
 	}
@@ -65,14 +65,17 @@ func (w *watch) look(s *Set, who Who, d float64) (Parting, bool) {
 	return Parting{}, false
 }
 
-// slowestExit returns the longest minimum time among the exits of the run's mode:
-// the mode cannot be expected to be left before.
-func slowestExit(r *sim.Run) float64 {
-	l, mode, t := r.Config().Logic, r.Engine().Mode(), 0.0
+// dwell returns the least time that the run's mode lasts once entered: the shortest
+// minimum time among its exits.
+func dwell(r *sim.Run) float64 {
+	l, mode, t := r.Config().Logic, r.Engine().Mode(), math.Inf(1)
 	for i := range l.Transitions {
-		if x := &l.Transitions[i]; x.From == mode {
-			t = max(t, x.MinTime)
+		if x := &l.Transitions[i]; x.From == mode || x.From == logic.AnyMode {
+			t = min(t, x.MinTime)
 		}
+	}
+	if math.IsInf(t, 1) {
+		return 0
 	}
 	return t
 }
