@@ -2,7 +2,7 @@
 //
 // Exit codes: 0 when all went well and, for run, the robot arrived; 1 when it did
 // not arrive; 2 when something was wrong with what was asked: a bad file, an
-// unknown flag, a port that is taken.
+// unknown flag, a port that is taken. check has 1 for not met, and 3 for undecided.
 package cli
 
 import (
@@ -81,11 +81,12 @@ Without a command it serves the lab for a browser, like "leeway serve".
 FILE, wherever it is asked for, is a scenario file, - for standard input, or
 shipped:NAME for one of the scenarios that come with Leeway.
 
-Exit status: 0 all well and, for run, the robot arrived; 1 it did not arrive;
-2 bad input.`,
+Exit status: 0 all well and, for run, the robot arrived; 1 it did not arrive, or,
+for check, what is asked is not met; 2 bad input; 3 a check is undecided.`,
 		Example: `  leeway
   leeway serve --addr 127.0.0.1:9000
   leeway run shipped:pocket
+  leeway audit shipped:sparse
   leeway validate my-floor.json`,
 		Args:          cobra.NoArgs,
 		RunE:          serve.RunE,
