@@ -177,7 +177,7 @@ func TestRunInWords(t *testing.T) {
 			t.Errorf("no aligned row %q in\n%s", row, out)
 		}
 	}
-	find("Parts from the point: At 0:")
+	find("Parts from the point: ")
 	find("! A gain of ")
 	if !strings.Contains(find("A simulation says nothing"), "ISO 13855") {
 		t.Error("the caution names no standard")

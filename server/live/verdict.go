@@ -104,8 +104,8 @@ func (v *verdict) fillModels(set *shadow.Set) {
 			Who: w, Status: o.Status.String(), Time: o.Time, Leeway: o.Leeway, Way: o.Way, Switches: o.Switches, Contacts: o.Contacts,
 			Saturated: o.Saturated, Estimate: o.EstimateError, Largest: d.Largest, LargestAt: d.At, RMS: d.RMS,
 		}
-		if p := set.Partings(w); len(p) > 0 {
-			m.Parting, m.PartingTick = p[0].Text, p[0].Tick
+		if p, ok := shadow.MostTelling(set.Partings(w)); ok {
+			m.Parting, m.PartingTick = p.Text, p.Tick
 		}
 		v.Models = append(v.Models, m)
 	}

@@ -138,10 +138,11 @@ func (f *Finished) Compared(w shadow.Who) string {
 		w, metres(m.Deviation.Largest), shadow.Clock(m.Deviation.At), metres(m.Deviation.RMS), metres(m.Frechet))
 }
 
-// FirstParting says in words where a shadow and the robot first parted.
+// FirstParting says in words where a shadow and the robot first parted; a different
+// decision tells more than a drift before it.
 func (f *Finished) FirstParting(w shadow.Who) string {
-	if p := f.Models[w].Partings; len(p) > 0 {
-		return p[0].Text
+	if p, ok := shadow.MostTelling(f.Models[w].Partings); ok {
+		return p.Text
 	}
 	return fmt.Sprintf("It never parted from the %s.", w)
 }

@@ -149,10 +149,10 @@ func (s *Set) Partings(w Who) []Parting {
 	return s.apart[w].partings
 }
 
-// First returns the parting that tells most: the first different decision, or, where
-// there is none, the first time they drifted apart.
-func (s *Set) First(w Who) (p Parting, ok bool) {
-	all := s.Partings(w)
+// MostTelling returns, of a shadow's partings, the one that tells most: the first
+// different decision, or, where there is none, the first time they drifted apart. ok is
+// false when there is no parting.
+func MostTelling(all []Parting) (p Parting, ok bool) {
 	for _, p := range all {
 		if !p.Drifted {
 			return p, true

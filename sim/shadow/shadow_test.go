@@ -237,7 +237,7 @@ func TestPartings(t *testing.T) {
 			}
 		}
 	}
-	first, ok := s.First(shadow.Point)
+	first, ok := shadow.MostTelling(p)
 	if !ok || first.Drifted {
 		t.Errorf("the first parting that tells most: %+v", first)
 	}
