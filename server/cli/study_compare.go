@@ -8,12 +8,15 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"leeway/server/studies"
+	"leeway/sim/scenario"
 	"leeway/sim/study"
 )
 
 func newCompare() *cobra.Command {
 	var o studyFlags
 	var n int
+	var kind string
 	cmd := &cobra.Command{
 		Use:   "compare FILE FILE...",
 		Short: "Run several designs on the same seeds and say which does better",
@@ -23,12 +26,17 @@ robots, rings or logics on one floor, for instance.
 All take the seed of the first. One that says nothing about what varies takes that of
 the first too, so that starts, goals and all else that is drawn are the same.
 
+With --floors the designs are compared on generated floors instead of their own, a new
+one for every trial, the same for all designs: scattered, rooms, pockets or mazes. All of
+them have a way for the largest hull.
+
 The comparison is by pairs of trials: how many only the one does as asked and how many
 only the other, with the exact test of McNemar, and the difference in success (with
 an interval after Newcombe) and in mean leeway (by bootstrap).
 
 ` + variesHelp,
 		Example: `  leeway compare ten-beams.json twenty-beams.json
+  leeway compare now.json idea.json --floors rooms --n 100
   leeway compare now.json idea1.json idea2.json --n 500 --csv compare.csv`,
 		Args: cobra.MinimumNArgs(2),
 		RunE: func(cmd *cobra.Command, args []string) error {
@@ -40,6 +48,7 @@ an interval after Newcombe) and in mean leeway (by bootstrap).
 				return err
 			}
 			names, sources := designNames(args), []study.Source{s.subject.Trials}
+			designs := []*scenario.Scenario{s.subject.Scenario}
 			for _, arg := range args[1:] {
 				sc, err := readScenarioOrLink(cmd, arg)
 				if err != nil {
@@ -53,7 +62,16 @@ an interval after Newcombe) and in mean leeway (by bootstrap).
 				if err != nil {
 					return withName(arg, err)
 				}
-				sources = append(sources, t)
+				sources, designs = append(sources, t), append(designs, sc)
+			}
+			if kind != "" {
+				floors, err := studies.NewFloors(kind, uint64(s.subject.Scenario.Seed), designs...)
+				if err != nil {
+					return err
+				}
+				for i := range designs {
+					sources[i] = floors.On(designs[i])
+				}
 			}
 			if o.budget > 0 {
 				n = min(n, max(1, o.budget/len(sources)))
@@ -67,6 +85,7 @@ an interval after Newcombe) and in mean leeway (by bootstrap).
 	}
 	o.add(cmd, false)
 	cmd.Flags().IntVar(&n, "n", 200, "trials of every design")
+	cmd.Flags().StringVar(&kind, "floors", "", "compare on generated floors of this `kind`: scattered, rooms, pockets or mazes")
 	return cmd
 }
 

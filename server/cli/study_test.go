@@ -113,6 +113,7 @@ func TestOtherStudies(t *testing.T) {
 		{"sweep " + file + " --over ring.beams=4:12:2 --n 4", "sweep", "cells"},
 		{"sweep " + file + " --over ring.beams=4:12 --over robot.speed_m_s=0.3:0.6 --layout sobol --points 2 --n 2", "sweep", "success_indices"},
 		{"compare " + file + " " + more + " --n 12", "compare", "pairs"},
+		{"compare " + file + " " + more + " --n 4 --floors scattered", "compare", "pairs"},
 		{"audit " + file + " --n 2", "audit", "sentence"},
 		{"limit " + file + " --number ring.beams=4:20 --smallest --success 0.5 --n 10 --scan 3 --tolerance 8", "limit", "curve"},
 		{"tune " + file + " --number robot.speed_m_s=0.3:0.6 --n 4 --settings 3 --fresh 4 -o " + tuned, "tune", "best_on_fresh_trials"},
@@ -153,6 +154,7 @@ func TestStudiesRefuse(t *testing.T) {
 		"limit FILE --number robot.speed_m_s=0.2:1 --success 1":       "--success",
 		"tune FILE --number robot.speed_m_s=0.6:1":                    "outside of what it is to be tuned in",
 		"tune FILE --number robot.speed_m_s=0.2:1 --reward happiness": "--reward must be",
+		"compare FILE FILE --floors wet":                              "there are no floors",
 		"compare FILE":                                                "requires at least 2",
 		"trials FILE --csv no/such/folder.csv --n 2":                  "no/such",
 	} {

@@ -11,7 +11,10 @@ import (
 	"strings"
 	"testing"
 
+	"github.com/google/go-cmp/cmp"
+
 	"leeway/scenarios"
+	"leeway/sim"
 	"leeway/sim/scenario"
 	"leeway/sim/study"
 	"leeway/sim/study/stat"
@@ -252,5 +255,59 @@ func TestJUnit(t *testing.T) {
 	}
 	if f := got.Suites[1].Cases[0].Failure; f == nil || !strings.Contains(f.Text, `too <close> & "tight" near`) || !strings.Contains(f.Message, "90 % is asked") {
 		t.Errorf("%s", b)
+	}
+}
+
+// Generated floors are the same for all designs, differ from trial to trial, and a trial
+// printed as a scenario is the run of the study.
+func TestFloors(t *testing.T) {
+	a, b := subject(t, "sparse").Scenario, subject(t, "pocket").Scenario
+	for _, kind := range []string{"scattered", "rooms", "pockets", "mazes"} {
+		f, err := NewFloors(kind, 5, a, b)
+		if err != nil {
+			t.Fatal(err)
+		}
+		var last string
+		for i := range 3 {
+			x, err := f.On(a).Trial(i)
+			if err != nil {
+				t.Fatal(err)
+			}
+			y, err := f.On(b).Trial(i)
+			if err != nil {
+				t.Fatal(err)
+			}
+			if d := cmp.Diff(x.Floor, y.Floor); d != "" || x.Start != y.Start || x.Seed != y.Seed || x.Name == last {
+				t.Errorf("%s: trial %d differs between designs, or not from the one before:\n%s", kind, i, d)
+			}
+			last = x.Name
+			again, err := scenario.Parse(x.Print())
+			if err != nil {
+				t.Fatalf("%s: %v", kind, err)
+			}
+			one, err := again.Config()
+			if err != nil {
+				t.Fatal(err)
+			}
+			two, m, err := f.On(a).Config(i)
+			if err != nil {
+				t.Fatal(err)
+			}
+			one.Asked.Within, two.Asked.Within = 10, 10
+			r, err := sim.New(one)
+			if err != nil {
+				t.Fatal(err)
+			}
+			q, err := sim.NewOn(m, two)
+			if err != nil {
+				t.Fatal(err)
+			}
+			if o, p := r.Finish(), q.Finish(); o != p {
+				t.Errorf("%s: trial %d alone %+v, in the study %+v", kind, i, o, p)
+			}
+		}
+	}
+	if _, err := NewFloors("wet", 5, a); err == nil {
+		t.Error("wet floors")
 	}
 }
