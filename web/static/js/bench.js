@@ -192,6 +192,9 @@ function addresses() {
   for (const id of ['save', 'share-save']) {
     set(byId(id, HTMLAnchorElement), 'href', `/api/sessions/${encodeURIComponent(session)}/scenario`);
   }
+  for (const id of ['replay', 'report']) {
+    set(byId(id, HTMLAnchorElement), 'href', `/${id}/${encodeURIComponent(session)}`);
+  }
 }
 
 function keys() {
