@@ -228,8 +228,11 @@ func (s *Subject) TrialsChart(t *study.Trials, g *study.Grid) ([]byte, error) {
 		if n == 0 {
 			continue
 		}
+		// Edges to whole units, so that translucent neighbours neither overlap nor gape.
 		x, y := at(geom.Vec{X: float64(i%g.NX) * g.Cell, Y: float64(i/g.NX+1) * g.Cell})
-		p.rect(x, y, g.Cell*scale, g.Cell*scale, blueColour, fmt.Sprintf(`fill-opacity="%s" shape-rendering="crispEdges"`, trimmed(0.08+0.8*math.Sqrt(float64(n)/float64(most)), 2)))
+		x2, y2 := at(geom.Vec{X: float64(i%g.NX+1) * g.Cell, Y: float64(i/g.NX) * g.Cell})
+		x, y, x2, y2 = math.Round(x), math.Round(y), math.Round(x2), math.Round(y2)
+		p.rect(x, y, x2-x, y2-y, blueColour, fmt.Sprintf(`fill-opacity="%s" shape-rendering="crispEdges"`, trimmed(0.08+0.8*math.Sqrt(float64(n)/float64(most)), 2)))
 	}
 	for _, o := range c.Floor.Solids {
 		x, y := at(o.Points[0])
@@ -255,7 +258,9 @@ func (s *Subject) TrialsChart(t *study.Trials, g *study.Grid) ([]byte, error) {
 		}
 		x, y := at(gr.At)
 		p.path(circlePath(x, y, 6+2*math.Sqrt(float64(gr.Count))), "none", redColour, 2, "")
+		p.b.WriteString(`<g stroke="` + paperColour + `" stroke-width="3" paint-order="stroke" stroke-linejoin="round">`)
 		p.text(x+10, y-8, 12, "start", 700, redColour, fmt.Sprintf("%d %s", gr.Count, gr.Why))
+		p.b.WriteString("</g>\n")
 	}
 	p.rect(left, top, width*scale, height*scale, "none", `stroke="`+inkColour+`" stroke-width="1"`)
 	return p.bytes(), nil

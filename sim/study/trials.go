@@ -204,7 +204,7 @@ func group(results []Result) []Group {
 }
 
 // worst returns the trials that went worst: those that broke, that did not arrive,
-// that came too close, and then whatever had the least leeway.
+// that came too close, and then whatever had the least leeway; of equals, the longest.
 func worst(results []Result, n int) []int {
 	order := make([]int, len(results))
 	for i := range order {
@@ -218,7 +218,7 @@ func worst(results []Result, n int) []int {
 	}
 	slices.SortStableFunc(order, func(a, b int) int {
 		x, y := &results[a], &results[b]
-		return cmp.Or(cmp.Compare(rank(x.Miss), rank(y.Miss)), cmp.Compare(x.Leeway, y.Leeway))
+		return cmp.Or(cmp.Compare(rank(x.Miss), rank(y.Miss)), cmp.Compare(x.Leeway, y.Leeway), cmp.Compare(y.Time, x.Time))
 	})
 	order = order[:min(n, len(order))]
 	for i := range order {
