@@ -47,7 +47,7 @@
 // that cannot keep up with the chosen speed shows a run that is slower, never one
 // that is different.
 //
-// A tape takes memory while its session runs: with shadows about 3 MB for a minute of
-// run and about 100 MB for an hour, a robot alone about a third of that. Snapshots
-// are bounded to about 200 MB a tape, rows and beams to about 70 MB.
+// A tape takes memory while its session runs: with shadows about 2 MB for a minute of
+// run, 20 MB for ten and 80 to 160 MB for an hour; a robot alone about a third of that.
+// Package shadow bounds it: snapshots to about 200 MB, rows and beams to about 70 MB.
 package live

@@ -121,6 +121,13 @@ func TestTheExitsAreThoseOfTheEngine(t *testing.T) {
 		if f := b.shown(v, 0); len(f.Exits) != 0 {
 			t.Errorf("exits before the first look: %+v", f.Exits)
 		}
+		b.untilEnded(v)
+		b.say(v, `{"kind":"pause"}`)
+		b.say(v, `{"kind":"drag","what":"goal","x":2,"y":2,"done":true}`)
+		settle()
+		if f := greet(t, last(t, v.take(), "hello")).Frame; f.Status != "running" || len(f.Exits) != 0 {
+			t.Errorf("%s; exits of a logic that has just begun: %+v", f.Status, f.Exits)
+		}
 		if exits < 20 || len(modes) < 2 {
 			t.Errorf("%d exits of %d modes", exits, len(modes))
 		}

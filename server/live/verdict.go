@@ -68,27 +68,19 @@ func (f *frame) fillShadows(set *shadow.Set) {
 }
 
 // fillExits says how each way out of the robot's mode stood at its last decision.
+// There is nothing to say before the first, nor when a change has just set an ended
+// run going anew: its logic has no readings yet.
 func (f *frame) fillExits(r *sim.Run) {
 	f.Exits = f.Exits[:0]
-	at, ok := lastDecision(r)
-	if !ok {
+	if *r.Engine().Readings() == ([logic.NumReadings]float64{}) {
 		return
 	}
-	modes := r.Config().Logic.Modes
-	for _, x := range r.Engine().Exits(at) {
-		f.Exits = append(f.Exits, exitNow{x.To, modes[x.To].Name, x.Hold, x.Held, x.Gauges})
-	}
-}
-
-// lastDecision returns the time at which the run's logic last looked at its
-// readings; ok is false before the first time.
-func lastDecision(r *sim.Run) (at float64, ok bool) {
-	o, c := r.Outcome(), r.Config()
-	if o.Ticks == 0 {
-		return 0, false
-	}
+	c := r.Config()
 	every := int64(c.DecideEvery)
-	return float64((o.Ticks-1)/every*every) * c.Tick, true
+	decided := float64((r.Outcome().Ticks-1)/every*every) * c.Tick
+	for _, x := range r.Engine().Exits(decided) {
+		f.Exits = append(f.Exits, exitNow{x.To, c.Logic.Modes[x.To].Name, x.Hold, x.Held, x.Gauges})
+	}
 }
 
 // fillModels says how each model has done so far.
