@@ -77,7 +77,7 @@ type tab struct {
 
 	mu       sync.Mutex
 	frame    frame // the last that it received
-	frames   int   // received so far
+	frames   int   // received over the present connection
 	faults   []string
 	expected []*regexp.Regexp
 }
@@ -177,6 +177,8 @@ func (p *tab) listen(event any) {
 		}
 	case *network.EventWebSocketFrameError:
 		fault("websocket: %s", e.ErrorMessage)
+	case *network.EventWebSocketCreated:
+		p.frames = 0
 	case *network.EventWebSocketFrameReceived:
 		p.received(e.Response.PayloadData, fault)
 	}

@@ -55,7 +55,7 @@ func (p *tab) last() frame {
 	return p.frame
 }
 
-// seen returns how many frames the page has received.
+// seen returns how many frames the page has received since it connected.
 func (p *tab) seen() int {
 	p.mu.Lock()
 	defer p.mu.Unlock()
