@@ -64,18 +64,20 @@ func TestNothingSticksOutAtAnySize(t *testing.T) {
 	p := newTab(t, s)
 	office := s.open(map[string]any{"shipped": "office", "playing": false, "tick": 400})
 	workshopID := s.open(map[string]any{"scenario": workshop, "playing": false, "tick": 400})
-	for _, path := range []string{"/", "/bench/" + office, "/bench/" + workshopID} {
+	paths := []string{"/", "/bench/" + office, "/bench/" + workshopID, "/report/" + workshopID, "/replay/" + workshopID, "/open"}
+	for _, path := range paths {
 		for _, z := range sizes {
 			p.size(z.width, z.height, z.handheld)
 			p.visit(path)
 			p.see("the window has its size", fmt.Sprintf(`document.documentElement.clientWidth === %d`, z.width))
-			if path != "/" {
+			onBench := strings.HasPrefix(path, "/bench/")
+			if onBench {
 				p.alive()
 			}
 			if got := eval[string](p, beside); got != "" {
 				t.Errorf("%s, %d pixels wide: %s", path, z.width, got)
 			}
-			if path == "/" {
+			if !onBench {
 				continue
 			}
 			p.see("all of the floor is in its view", `(() => {
@@ -151,7 +153,8 @@ func TestPagesAreAccessible(t *testing.T) {
 	}
 	s := serve(t)
 	p := newTab(t, s)
-	bench := "/bench/" + s.open(map[string]any{"shipped": "wall", "playing": false, "tick": 2000})
+	wall := s.open(map[string]any{"shipped": "wall", "playing": false, "tick": 2000})
+	bench := "/bench/" + wall
 	look := func(what string) {
 		t.Helper()
 		type violation struct {
@@ -181,7 +184,7 @@ func TestPagesAreAccessible(t *testing.T) {
 			}
 		}
 	}
-	for _, path := range []string{"/", bench} {
+	for _, path := range []string{"/", "/report/" + wall, "/replay/" + wall, bench} {
 		p.size(1440, 900, false)
 		p.visit(path)
 		if path == bench {
