@@ -71,8 +71,8 @@ func TestTheVerdictIsThatOfTheModelsAlone(t *testing.T) {
 					Who: int(w), Status: o.Status.String(), Time: near(o.Time), Leeway: maybe(o.Leeway), Way: near(o.Way), Switches: o.Switches, Contacts: o.Contacts,
 					Saturated: near(o.Saturated), Estimate: near(o.EstimateError), Largest: near(d.Largest), LargestAt: near(d.At), RMS: near(d.RMS),
 				}
-				if p := set.Partings(w); len(p) > 0 {
-					want.Parting, want.PartingTick = p[0].Text, p[0].Tick
+				if p, ok := shadow.MostTelling(set.Partings(w)); ok {
+					want.Parting, want.PartingTick = p.Text, p.Tick
 					parted = true
 				}
 				if d := cmp.Diff(want, f.Verdict.Models[w]); d != "" {

@@ -48,7 +48,7 @@ type measures struct {
 	Largest     float64 // m
 	LargestAt   float64 // s
 	RMS         float64 // m
-	Parting     string  // the first, in a sentence
+	Parting     string  // the most telling, in a sentence
 	PartingTick int64
 }
 
