@@ -11,7 +11,8 @@
 //
 // # Reading the source
 //
-// subject.go is the way in; view.go and json.go are what is printed as JSON, csv.go the
+// subject.go is the way in, floors.go that of generated floors; part.go packs results for a
+// store; view.go and json.go are what is printed as JSON, csv.go the
 // table, junit.go the report for build servers; svg.go is the pen, and chart.go and
 // auditchart.go are the pictures.
 package studies

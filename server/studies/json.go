@@ -39,7 +39,7 @@ type Trials struct {
 	Worst  []Look  `json:"worst"`
 }
 
-// Trials makes the view.
+// TrialsView makes the view.
 func (s *Subject) TrialsView(h Head, t *study.Trials) Trials {
 	return Trials{h, t.Stopped, verdict(t.Verdict), summary(&t.Summary), groups(t.Groups), s.looks(t)}
 }

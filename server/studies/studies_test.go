@@ -12,6 +12,7 @@ import (
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
+	"github.com/google/go-cmp/cmp/cmpopts"
 
 	"leeway/scenarios"
 	"leeway/sim"
@@ -309,5 +310,46 @@ func TestFloors(t *testing.T) {
 	}
 	if _, err := NewFloors("wet", 5, a); err == nil {
 		t.Error("wet floors")
+	}
+}
+
+// A study that is taken up from its parts, in any order, is the one that was not
+// interrupted, and runs nothing twice.
+func TestParts(t *testing.T) {
+	s := subject(t, "sparse")
+	p := study.TrialsPlan{N: 12, Confidence: 0.95}
+	parts := make([]Part, 3)
+	n := 0
+	want, err := study.RunTrials(ctx, &study.Runner{Grid: s.Grid(), Keep: func(k study.Key, r study.Result) {
+		if n < 10 {
+			parts[n%3].Add(k, r)
+		}
+		n++
+	}}, s.Trials, p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var data [][]byte
+	for i := range parts {
+		b, err := parts[2-i].Encode()
+		if err != nil {
+			t.Fatal(err)
+		}
+		data = append(data, b)
+	}
+	known, err := DecodeParts(data...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	run := 0
+	got, err := study.RunTrials(ctx, &study.Runner{Grid: s.Grid(), Known: known, Keep: func(study.Key, study.Result) { run++ }}, s.Trials, p)
+	if err != nil || run != 2 {
+		t.Errorf("%d runs, %v", run, err)
+	}
+	if d := cmp.Diff(want, got, cmpopts.EquateNaNs()); d != "" {
+		t.Error(d)
+	}
+	if _, err := DecodeParts(data[0][:9]); err == nil {
+		t.Error("a torn part was taken")
 	}
 }
