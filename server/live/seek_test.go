@@ -293,6 +293,11 @@ func TestSeekPausesAndOnlyTheNewestIsShown(t *testing.T) {
 		for tick := range 200 {
 			b.say(v, fmt.Sprintf(`{"kind":"seek","tick":%d}`, 5*tick))
 		}
+		b.in(func() {
+			if b.s.tick() > 10 && b.s.tick() < 2000 || b.s.sought != 995 {
+				t.Errorf("at %d, seeking %d: it went to each place in turn", b.s.tick(), b.s.sought)
+			}
+		})
 		for len(v.mustFrames()) == 0 {
 			time.Sleep(time.Millisecond)
 			synctest.Wait()

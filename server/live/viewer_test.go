@@ -5,6 +5,7 @@ package live
 import (
 	"context"
 	"errors"
+	"fmt"
 	"net/http"
 	"net/http/httptest"
 	"strings"
@@ -318,5 +319,28 @@ func TestHastyViewerWaits(t *testing.T) {
 	other.wait("frame", func(f []byte) bool { return hear(t, f).Tick > 20 })
 	if err := b.s.do(context.Background(), func() {}); errors.Is(err, errEnded) {
 		t.Error("the session has ended")
+	}
+}
+
+func TestViewerLooksBackAndGoesOn(t *testing.T) {
+	b := newBench(t, room(t), Opening{Tick: 3000})
+	p := dial(t, serveLab(t, b.lab)+b.id)
+	p.wait("hello", nil)
+	for tick := 2900; tick >= 100; tick -= 100 {
+		p.send(fmt.Sprintf(`{"kind":"seek","tick":%d}`, tick))
+	}
+	back := hear(t, p.wait("frame", func(f []byte) bool { return hear(t, f).Tick == 100 }))
+	if back.Length != 3000 || back.AtHead || back.Playing || len(back.Shadows) != 2 {
+		t.Errorf("%+v", back)
+	}
+	p.send(`{"kind":"play"}`)
+	p.wait("frame", func(f []byte) bool { h := hear(t, f); return h.Tick > 110 && h.Playing && h.Length == 3000 })
+	p.send(`{"kind":"drag","what":"goal","x":6.5,"y":2,"done":true}`)
+	if n := said(t, p.wait("notice", nil)); !strings.Contains(n.Text, "another future") {
+		t.Error(n.Text)
+	}
+	g := greet(t, p.wait("hello", nil))
+	if g.Tape.Length >= 3000 || g.Frame.Tick > g.Tape.Length || g.Goal[0] != 6.5 {
+		t.Errorf("length %d, goal %v", g.Tape.Length, g.Goal)
 	}
 }
