@@ -110,11 +110,8 @@ func (s *Session) makeOn(now time.Time) {
 		}
 	}
 	s.goWhereSought()
-	tick, atHead := s.tick(), s.tape.AtHead()
+	tick := s.tick()
 	s.install(m.laid)
-	if atHead {
-		tick = s.tape.Length()
-	}
 	s.lookAt(tick)
 	s.setClock(time.Now())
 	s.playing, s.resume = s.playing || s.resume, false

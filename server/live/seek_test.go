@@ -223,6 +223,22 @@ func TestAChangeInThePastBeginsAnotherFuture(t *testing.T) {
 	})
 }
 
+// What is in a hand while somebody looks elsewhere moves there at once.
+func TestAThingInAHandGoesAlongToThePast(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newBench(t, room(t), Opening{Tick: 500})
+		v := b.join()
+		b.say(v, `{"kind":"drag","what":"goal","x":7,"y":2}`)
+		b.shown(v, 300)
+		b.say(v, `{"kind":"drag","what":"goal","x":7,"y":2.5}`)
+		b.in(func() {
+			if e := b.s.robot().Edits(); len(e) != 1 || e[0].Tick != 300 || e[0].Pos.Y != 2.5 || b.s.tape.Length() != 300 {
+				t.Errorf("edits %+v, length %d", e, b.s.tape.Length())
+			}
+		})
+	})
+}
+
 // What cannot be done in the past forgets nothing.
 func TestARefusedChangeInThePastForgetsNothing(t *testing.T) {
 	synctest.Test(t, func(t *testing.T) {

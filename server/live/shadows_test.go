@@ -290,6 +290,7 @@ func TestALongTapeIsComputedAnewInSlices(t *testing.T) {
 			t.Fatal(err)
 		}
 		b.in(func() {
+			b.s.speed = 0 // and yet it does not go on meanwhile
 			b.s.receive(v, m)
 			for b.s.making != nil {
 				before := b.s.making.tape.Length()
@@ -303,10 +304,12 @@ func TestALongTapeIsComputedAnewInSlices(t *testing.T) {
 				if b.s.making != nil && b.s.making.tape.Length()-before > sliceTicks+64 {
 					t.Errorf("%d ticks in one slice", b.s.making.tape.Length()-before)
 				}
-				if rounds == 2 { // what is changed meanwhile is part of it, and cuts
+				switch rounds { // what is changed meanwhile is part of it, and cuts
+				case 1:
+					b.s.receive(v, &message{Kind: "number", Path: "asked.within_s", number: 3500})
+				case 2:
 					b.s.receive(v, &message{Kind: "drag", What: "solid", ID: "post", X: 6, Y: 1, Done: true})
 					length = b.s.tape.Length()
-					b.s.receive(v, &message{Kind: "number", Path: "asked.within_s", number: 3500})
 				}
 			}
 			if !b.s.set().Shadows() || b.s.tick() != 45_000 || b.s.tape.Length() != 45_000 || !b.s.playing || b.s.sc.Asked.Within != 3500 {
@@ -326,6 +329,31 @@ func TestALongTapeIsComputedAnewInSlices(t *testing.T) {
 				t.Errorf("the unicycle is %+v, alone %+v", got, want)
 			}
 		}
+	})
+}
+
+// Who looks elsewhere while a tape is in the making looks there in the new one.
+func TestSeekingWhileATapeIsInTheMaking(t *testing.T) {
+	synctest.Test(t, func(t *testing.T) {
+		b := newBench(t, longRun(t, 40_000), Opening{Tick: 30_000})
+		v := b.join()
+		b.say(v, `{"kind":"shadows","on":false}`)
+		b.in(func() {
+			b.s.receive(v, &message{Kind: "shadows", On: new(bool)})
+			on := true
+			b.s.receive(v, &message{Kind: "shadows", On: &on})
+			tick := int64(5000)
+			b.s.receive(v, &message{Kind: "seek", Tick: &tick})
+			if b.s.making == nil {
+				t.Fatal("it is made at once: the test shows nothing")
+			}
+			for b.s.making != nil {
+				b.s.makeOn(time.Now())
+			}
+			if b.s.tick() != 5000 || b.s.tape.Length() != 30_000 || !b.s.set().Shadows() {
+				t.Errorf("tick %d of %d", b.s.tick(), b.s.tape.Length())
+			}
+		})
 	})
 }
 

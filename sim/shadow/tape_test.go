@@ -6,6 +6,7 @@ import (
 	"leeway/sim"
 	"leeway/sim/floor"
 	"leeway/sim/geom"
+	"leeway/sim/logic"
 	"leeway/sim/ring"
 	"leeway/sim/shadow"
 	"leeway/sim/steer"
@@ -241,6 +242,90 @@ func TestTheRecordForgetsOtherFutures(t *testing.T) {
 			rt.Errorf("marks: %s", d)
 		}
 	})
+}
+
+// Two decisions are different from some tick on, but that is known only later: cut in between, the tape has no such
+// mark, and gets it once.
+func TestACutBeforeAPartingIsKnown(t *testing.T) {
+	c := busy()
+	tape := newTape(t, c, true)
+	count := func(kind shadow.EventKind) (n int) {
+		for _, e := range tape.Record.Events {
+			if e.Kind == kind {
+				n++
+			}
+		}
+		return n
+	}
+	partings := func() int {
+		return len(tape.Now().Partings(shadow.Point)) + len(tape.Now().Partings(shadow.Unicycle))
+	}
+	var from, known int64 // of a different decision
+	for last := 0; !tape.Done() && known == 0; {
+		tape.Step()
+		if n := partings(); n > last {
+			last = n
+			for w := shadow.Point; w < shadow.Models; w++ {
+				if p := tape.Now().Partings(w); len(p) > 0 && !p[len(p)-1].Drifted && p[len(p)-1].Tick < tape.Length()-2 {
+					from, known = p[len(p)-1].Tick, tape.Length()
+				}
+			}
+		}
+	}
+	if known == 0 {
+		t.Fatal("the models never decide differently: the test shows nothing")
+	}
+	all := count(shadow.PartingMark)
+	tape.LookAt((from + known) / 2)
+	if _, err := tape.Edit(sim.Edit{Kind: sim.MoveMover, Index: 0, Pos: v(5.5, 1)}); err != nil {
+		t.Fatal(err)
+	}
+	if got, want := count(shadow.PartingMark), partings(); got != want || got >= all {
+		t.Errorf("%d marks, %d partings, %d before", got, want, all)
+	}
+	for tape.Length() < known {
+		tape.Step()
+	}
+	if got, want := count(shadow.PartingMark), partings(); got != want || got != all {
+		t.Errorf("%d marks, %d partings, %d before", got, want, all)
+	}
+}
+
+// A tape that is cut while a model chatters does not say so a second time, nor does it forget it.
+func TestACutAmongChatter(t *testing.T) {
+	c := busy()
+	n := logic.DefaultNumbers(0.21, 0.4, 0.15)
+	n.Band, n.MinTime = 0, 0
+	c.Logic = logic.Default(n)
+	c.Ring.NoiseBase = 0.3
+	tape := newTape(t, c, true)
+	marks := func() (at []int64) {
+		for _, e := range tape.Record.Events {
+			if e.Kind == shadow.ChatterMark && e.Who == shadow.Robot {
+				at = append(at, e.Tick)
+			}
+		}
+		return at
+	}
+	for !tape.Done() {
+		tape.Step()
+	}
+	all := marks()
+	if len(all) == 0 {
+		t.Fatal("the robot does not chatter: the test shows nothing")
+	}
+	for _, at := range all {
+		tape.LookAt(at + 1)
+		if _, err := tape.Edit(sim.Edit{Kind: sim.SetNumber, Number: sim.GainNumber, Value: c.Steer.Gain}); err != nil {
+			t.Fatal(err)
+		}
+		for !tape.Done() {
+			tape.Step()
+		}
+		if d := cmp.Diff(all, marks()); d != "" {
+			t.Fatalf("cut at %d: %s", at+1, d)
+		}
+	}
 }
 
 // What was changed at the very tick that is looked at is done already there, and changed again there it stays the last
