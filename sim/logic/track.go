@@ -24,7 +24,6 @@ type track struct {
 	metDistance float64 // goal distance at the meeting
 	metAt       float64 // s
 	side        Side
-	met         bool    // an obstacle has been met on the way to this goal
 	parted      bool    // and left again
 	partedBest  float64 // d_min then
 	deceptions  int     // meetings in a row that brought no progress
