@@ -48,6 +48,17 @@ func (p *tab) alive() {
 	p.see("no banner covers the floor", `document.getElementById('banner').hidden`)
 }
 
+// reload loads the bench anew and waits until it is alive again: what the old page
+// has received does not count.
+func (p *tab) reload() {
+	p.t.Helper()
+	p.mu.Lock()
+	p.frames = 0
+	p.mu.Unlock()
+	p.do(chromedp.Reload())
+	p.alive()
+}
+
 // last returns the latest frame that the page has received.
 func (p *tab) last() frame {
 	p.mu.Lock()
@@ -121,15 +132,20 @@ func (p *tab) says(selector, words string) {
 // point is a place on the screen, in pixels of the window.
 type point struct{ X, Y float64 }
 
-// middle scrolls an element into view and returns the middle of it.
+// middle scrolls an element into view, waits until it rests there, and returns the
+// middle of it.
 func (p *tab) middle(selector string) point {
 	p.t.Helper()
 	p.see("there is "+selector, fmt.Sprintf(`document.querySelector(%q)`, selector))
-	return eval[point](p, fmt.Sprintf(`(() => {
+	return eval[point](p, fmt.Sprintf(`(async () => {
 		const e = document.querySelector(%q);
 		e.scrollIntoView({block: 'nearest', inline: 'nearest', behavior: 'instant'});
-		const r = e.getBoundingClientRect();
-		return {X: r.left + r.width / 2, Y: r.top + r.height / 2};
+		for (let before = null; ;) {
+			const r = e.getBoundingClientRect();
+			if (before && before.left === r.left && before.top === r.top) return {X: r.left + r.width / 2, Y: r.top + r.height / 2};
+			before = r;
+			await new Promise((next) => requestAnimationFrame(() => requestAnimationFrame(next)));
+		}
 	})()`, selector))
 }
 

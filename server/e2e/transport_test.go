@@ -98,9 +98,8 @@ func TestTransportByKeys(t *testing.T) {
 	p.see("they are off", `!document.getElementById('keys-on').checked`)
 	p.keys(kb.Escape)
 	p.see("the dialog is closed", `!document.getElementById('keys').open`)
-	p.do(chromedp.Reload())
-	p.alive()
-	p.keys("r ...")
+	p.reload()
+	p.keys("r...")
 	// What the page would send, it has sent before what it is told now.
 	p.click("[data-do=tick]")
 	p.ticks(2)
