@@ -70,6 +70,7 @@ func TestTransportByKeys(t *testing.T) {
 	p.bench(s.open(map[string]any{"scenario": workshop, "playing": false}))
 	p.keys(" ")
 	p.until("time passes", func() bool { return p.last().Tick > 40 })
+	p.see("the page knows that it plays", `document.querySelector('[data-do=play]').ariaLabel === 'Pause'`)
 	p.keys(" ")
 	stood := p.settled()
 	p.keys("...")

@@ -65,7 +65,7 @@ const floor = new Floor(byId('floor', SVGSVGElement), byId('cursor', HTMLElement
     return dispatch({ type: 'hold', key: thing.key, anchor: [x, y] });
   },
   release() {
-    if (drag) live.send({ ...drag.command, done: true });
+    if (drag) send({ ...drag.command, done: true });
     drag = null;
     dispatch({ type: 'release' });
   },
@@ -74,11 +74,11 @@ const floor = new Floor(byId('floor', SVGSVGElement), byId('cursor', HTMLElement
 });
 
 const brief = new Brief(byId('brief', HTMLElement), {
-  number: (path, value) => live.send({ kind: 'number', path, value }),
-  choice: (path, value) => live.send({ kind: 'choice', path, value }),
+  number: (path, value) => send({ kind: 'number', path, value }),
+  choice: (path, value) => send({ kind: 'choice', path, value }),
 });
 const transport = new Transport(byId('transport', HTMLElement), byId('legend', HTMLElement), (command) => {
-  if (!live.send(command)) strip.show('Not done: the connection is lost.', true);
+  if (!send(command)) strip.show('Not done: the connection is lost.', true);
 });
 const banner = new Banner(byId('banner', HTMLElement), () => live.retry());
 const tape = new TapeView(byId('tape', HTMLElement), { seek, redraw: schedule });
@@ -118,12 +118,24 @@ function schedule() {
   if (!drawing) drawing = requestAnimationFrame(draw);
 }
 
+/**
+ * Sends a command, after the seek that waits for the next redraw: what a person did
+ * first is done first.
+ * @param {Command} command
+ */
+function send(command) {
+  sendSeek();
+  return live.send(command);
+}
+
+function sendSeek() {
+  if (wanted !== null) live.send({ kind: 'seek', tick: wanted });
+  wanted = null;
+}
+
 function draw() {
   drawing = 0;
-  if (wanted !== null) {
-    live.send({ kind: 'seek', tick: wanted });
-    wanted = null;
-  }
+  sendSeek();
   if (drag && !drag.sent) {
     drag.sent = true;
     live.send(drag.command);
