@@ -19,20 +19,24 @@ func (e *Engine) behave(in *Input) geom.Vec {
 	case Avoidance:
 		u = e.avoid(in, m, top)
 	}
-	return cap0(u, top)
+	return atMost(u, top)
 }
 
-// cap0 shortens u to the length top, and makes it zero should it not be finite.
-func cap0(u geom.Vec, top float64) geom.Vec {
+// atMost shortens u to the length top, and makes it zero should it not be finite.
+func atMost(u geom.Vec, top float64) geom.Vec {
 	n := u.Norm()
-	if !(n <= math.MaxFloat64) || top <= 0 {
+	switch {
+	case !(n <= math.MaxFloat64) || top <= 0:
 		return geom.Vec{}
+	case n <= top:
+		return u
 	}
-	if n > top {
-		u = u.Scale(top / n)
-		for u.Norm() > top {
-			u = u.Scale(1 - 1e-15)
-		}
+	u = u.Scale(top / n)
+	if u.Norm() > top { // by rounding
+		u = u.Scale(1 - 1e-15)
+	}
+	if u.Norm() > top { // numbers too small to shorten
+		return geom.Vec{}
 	}
 	return u
 }
@@ -67,31 +71,23 @@ func (e *Engine) seek(in *Input, m *Mode, top float64) geom.Vec {
 		v = math.Min(v, m.GoalGain*t.distance)
 	}
 	if m.StandOff > 0 {
-		dir = e.clearOf(in, dir, in.Hull+m.StandOff, math.Min(m.StandOff, t.distance))
+		dir = e.clearOf(dir, in.Hull+m.StandOff, math.Min(m.StandOff, t.distance))
 	}
 	return dir.Scale(math.Min(v, e.paced(in, dir, top)))
 }
 
-const maxDeflection = 0.8660254037844387 // cosine of 30°
-
-func (e *Engine) clearOf(in *Input, dir geom.Vec, w, reach float64) geom.Vec {
+// clearOf returns the direction nearest to dir along which a strip of half width w
+// is free for the length reach, if it is within 30° of dir; else dir itself.
+func (e *Engine) clearOf(dir geom.Vec, w, reach float64) geom.Vec {
+	const most = 0.8660254037844387 // cosine of 30°
 	e.see.blockStrips(w, reach)
-	left, okL := e.see.sweep(dir, RightSide)
-	right, okR := e.see.sweep(dir, LeftSide)
-	cl, cr := -1.0, -1.0
-	if okL {
-		cl = dir.Dot(left)
+	best, near := dir, -1.0
+	for _, side := range [...]Side{RightSide, LeftSide} { // to the left first: it wins a tie
+		if d, ok := e.see.sweep(dir, side); ok && d.Dot(dir) >= most && d.Dot(dir) > near {
+			best, near = d, d.Dot(dir)
+		}
 	}
-	if okR {
-		cr = dir.Dot(right)
-	}
-	switch {
-	case cl >= cr && cl >= maxDeflection:
-		return left
-	case cr > cl && cr >= maxDeflection:
-		return right
-	}
-	return dir
+	return best
 }
 
 // reachOfPush is the gap within which returns push the robot away.
@@ -103,7 +99,7 @@ func (e *Engine) reachOfPush(in *Input) float64 {
 }
 
 // avoid moves away from what is near, the faster the nearer it is; between two
-// things that stand equally near, not at all. Along a wall that it has on a side it
+// things that stand equally near, not at all. Along a wall that is on a side it
 // goes on at the same time, slowly, and the push only moves it aside: a push
 // against the way would hold it for ever where a passage is narrow.
 func (e *Engine) avoid(in *Input, m *Mode, top float64) geom.Vec {

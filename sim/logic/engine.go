@@ -104,12 +104,14 @@ func resize[T any](s []T, n int) []T {
 // moved since the last call starts d_min and the meeting point afresh; so does
 // a robot whose believed place has jumped, because somebody carried it.
 func (e *Engine) Decide(in *Input) Decision {
-	if !e.started {
-		e.started = true
-		e.since = in.Time
-	}
 	e.look(in)
 	e.keepTrack(in)
+	if !e.started {
+		e.started, e.since = true, in.Time
+		if m := &e.l.Modes[e.mode]; m.Behaviour == WallFollowing {
+			e.chooseSide(in, m)
+		}
+	}
 	e.read(in)
 	fired := e.guard(in)
 	if fired >= 0 {
@@ -152,7 +154,6 @@ func (e *Engine) guard(in *Input) int {
 // enter makes transition i happen.
 func (e *Engine) enter(in *Input, i int) {
 	t := &e.l.Transitions[i]
-	from := &e.l.Modes[e.mode]
 	to := &e.l.Modes[t.To]
 	e.last = Switch{Tick: in.Tick, Time: in.Time, From: e.mode, To: t.To, Transition: i, Readings: e.readings}
 	e.switched = true
@@ -161,10 +162,10 @@ func (e *Engine) enter(in *Input, i int) {
 	switch {
 	case t.Meet:
 		e.meet(in, to)
-	case besideWall(to.Behaviour) && e.track.side == NoSide:
+	case to.Behaviour == WallFollowing && (e.track.side == NoSide || to.Side != BetterSide):
 		e.chooseSide(in, to)
-	case besideWall(from.Behaviour) && !besideWall(to.Behaviour):
-		e.part(in)
+	case to.Behaviour == GoalSeeking && e.track.side != NoSide:
+		e.part()
 	}
 	e.last.Side = e.Side()
 }
@@ -177,7 +178,7 @@ func (e *Engine) forgetConditions() {
 	}
 }
 
-// besideWall reports whether a behaviour has a wall on a side.
+// besideWall reports whether a behaviour may have a wall on a side.
 func besideWall(b Behaviour) bool { return b == WallFollowing || b == Avoidance }
 
 // Readings returns the readings of the last Decide; the same memory at every call.

@@ -14,13 +14,9 @@ type wall struct {
 	travel geom.Vec // direction last taken along it; zero before the first
 }
 
-// followWall goes along the wall on the side.
+// followWall goes along the wall on the side; straight to the goal where there is none.
 func (e *Engine) followWall(in *Input, m *Mode, top float64) geom.Vec {
 	s, t := &e.see, &e.track
-	side := t.side
-	if side == NoSide {
-		side = LeftSide
-	}
 	if !e.holdWall(in, m) {
 		return t.goalDir.Scale(top)
 	}
@@ -28,7 +24,7 @@ func (e *Engine) followWall(in *Input, m *Mode, top float64) geom.Vec {
 	if (into == geom.Vec{}) {
 		into = s.head
 	}
-	dir, ok := e.alongWall(in, into, side, m.StandOff)
+	dir, ok := e.alongWall(in, into, t.side, m.StandOff)
 	if !ok {
 		return geom.Vec{}
 	}
@@ -80,9 +76,9 @@ func (e *Engine) turnsBack(dir geom.Vec) bool {
 // ahead instead of keeping off each return by itself makes a noisy wall look smooth.
 func (e *Engine) standOff(into, first, middle geom.Vec, side Side, w, aim float64) geom.Vec {
 	s := &e.see
-	limit, room := turn(into, first, side), turn(first, middle, side)
+	limit, room := turn(into, first, side)+alike, turn(first, middle, side)
 	far, rest := aim+w, float64(aim*aim)-float64(w*w)
-	dir := first
+	dir, turned := first, 0.0
 	for range maxPasses {
 		moved := false
 		for i := range s.points {
@@ -97,15 +93,17 @@ func (e *Engine) standOff(into, first, middle geom.Vec, side Side, w, aim float6
 			if a := turn(into, p.v, side); a > limit && a < 3 {
 				continue // beyond the opening
 			}
-			b := block{p.v.Scale(1 / p.rho), (float64(p.rho*p.rho) + rest) / (2 * p.rho * aim)}
-			if b.cos <= -1 {
-				return middle
+			cos := (float64(p.rho*p.rho) + rest) / (2 * p.rho * aim)
+			b := block{p.v.Scale(1 / p.rho), math.Max(-1, cos)}
+			if !b.covers(dir) {
+				continue
 			}
 			next := b.end(side)
-			if turn(first, next, side) >= room {
+			at := turn(first, next, side)
+			if at >= room || at < turned {
 				return middle
 			}
-			dir, moved = next, true
+			dir, turned, moved = next, at, true
 		}
 		if !moved {
 			break
@@ -166,7 +164,7 @@ func (e *Engine) take(p *point) {
 // and the direction taken.
 func (e *Engine) moveAlong(in *Input, into, dir geom.Vec, standOff float64) {
 	s, side := &e.see, e.track.side
-	limit := turn(into, dir, side)
+	limit := turn(into, dir, side) + alike
 	var best *point
 	for i := range s.points {
 		p := &s.points[i]
@@ -204,7 +202,8 @@ func (e *Engine) findWall(in *Input, m *Mode) bool {
 		if nearest == nil || p.rho < nearest.rho {
 			nearest = p
 		}
-		if d, ok := touchAt(p.v, t.goalDir, w); ok && d < touch {
+		d, ok := touchAt(p.v, t.goalDir, w)
+		if ok && (d < touch || d == touch && p.rho < ahead.rho) { // several may touch at once
 			touch, ahead = d, p
 		}
 	}
@@ -222,26 +221,45 @@ func (e *Engine) findWall(in *Input, m *Mode) bool {
 // chooseSide decides on which side mode m keeps the wall: as its rule says, or
 // where the way along the wall points more toward the goal; the left on a tie.
 func (e *Engine) chooseSide(in *Input, m *Mode) {
-	t := &e.track
+	t, before := &e.track, e.track.side
 	switch m.Side {
 	case KeepLeft:
 		t.side = LeftSide
-		return
 	case KeepRight:
 		t.side = RightSide
-		return
+	default:
+		t.side = e.betterSide(in, m)
 	}
-	t.side = LeftSide
+	if t.side != before {
+		e.wall.known = false
+	}
+}
+
+// betterSide is the side of the better way; of two equal ones, or where there is
+// neither, the side of the goal line on which the wall is; else the left.
+func (e *Engine) betterSide(in *Input, m *Mode) Side {
 	if !e.findWall(in, m) {
-		return
+		return LeftSide
 	}
-	into := e.wall.at.Sub(e.see.pos).Unit()
+	goal, into := e.track.goalDir, e.wall.at.Sub(e.see.pos).Unit()
 	left, okL := e.wayOn(in, into, LeftSide)
 	right, okR := e.wayOn(in, into, RightSide)
-	const tie = 1e-9
-	if okR && (!okL || t.goalDir.Dot(right) > t.goalDir.Dot(left)+tie) {
-		t.side = RightSide
+	gain := 0.0
+	switch {
+	case okL && okR:
+		gain = goal.Dot(left) - goal.Dot(right)
+	case okL:
+		gain = 1
+	case okR:
+		gain = -1
 	}
+	if math.Abs(gain) < alike {
+		gain = goal.Cross(into)
+	}
+	if gain < -alike {
+		return RightSide
+	}
+	return LeftSide
 }
 
 // foresight is how far, in hull radii, the ways along either side of a wall are

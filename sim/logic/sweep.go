@@ -23,7 +23,7 @@ type block struct {
 // reach meets something.
 func (s *sight) blockStrips(w, reach float64) {
 	s.blocks = s.blocks[:0]
-	far, tangent := reach+w, float64(reach*reach)+float64(w*w)
+	far, edge, tangent := reach+w, float64(w*(1+alike)), float64(reach*reach)+float64(w*w)
 	for i := range s.points {
 		p := &s.points[i]
 		if p.rho >= far || p.rho == 0 {
@@ -32,8 +32,8 @@ func (s *sight) blockStrips(w, reach float64) {
 		k := 1 / p.rho
 		var cos float64
 		switch {
-		case p.rho <= w:
-			// Inside already: every direction that comes nearer is blocked.
+		case p.rho <= edge:
+			// Inside already, or on the edge: every direction that comes nearer is blocked.
 			cos = -math.Min(0.5, (w-p.rho)/reach)
 		case float64(p.rho*p.rho) <= tangent:
 			// The side of the strip meets it.
@@ -96,7 +96,7 @@ func (s *sight) middle(first geom.Vec, side Side) geom.Vec {
 	open, end := 2.0, first.Scale(-1)
 	for i := range s.blocks {
 		b := &s.blocks[i]
-		if b.dir.Dot(first) > b.cos-1e-9 && turn(first, b.dir, side) > 2 {
+		if b.dir.Dot(first) > b.cos-alike && turn(first, b.dir, side) > 2 {
 			continue // this one ends where the opening begins
 		}
 		start := b.end(-side)
@@ -114,6 +114,9 @@ func (s *sight) middle(first geom.Vec, side Side) geom.Vec {
 	return first.Perp()
 }
 
+// alike is how little two turns, or cosines, differ that only rounding tells apart.
+const alike = 1e-9
+
 // turn measures how far b is turned from a, away from a wall on the side: a number
 // in [0, 4) that grows with the angle and is 0 at none, 1 at a right angle, 2 at a
 // half turn. A b that is behind a by no more than rounding counts as not turned.
@@ -124,7 +127,7 @@ func turn(a, b geom.Vec, side Side) float64 {
 	}
 	n := math.Abs(x) + math.Abs(y)
 	switch {
-	case n == 0 || x > 0 && y < 0 && -y < 1e-9*n:
+	case n == 0 || x > 0 && y < 0 && -y < alike*n:
 		return 0
 	case y >= 0 && x >= 0:
 		return y / n

@@ -8,7 +8,7 @@ const (
 	Stop          Behaviour = iota // stands still
 	GoalSeeking                    // toward the goal, v = min(v0, GoalGain·distance)
 	WallFollowing                  // along the wall on Side, at StandOff
-	Avoidance                      // away from near returns, by a weighted sum
+	Avoidance                      // away from near returns, by a weighted sum; and on along a wall that is on a side
 	numBehaviours
 )
 
@@ -137,7 +137,7 @@ type Transition struct {
 	When    []Condition
 	MinTime float64 // s in the mode
 	Hold    float64 // s
-	Meet    bool    // an obstacle is met: d_min, meeting point and side start here
+	Meet    bool    // an obstacle is met: d_min, meeting point and side start here (see Engine)
 }
 
 // AnyMode as Transition.From stands for every mode that does not end the run.

@@ -23,15 +23,16 @@ type track struct {
 	best        float64 // d_min
 	metDistance float64 // goal distance at the meeting
 	metAt       float64 // s
-	side        Side
-	parted      bool    // and left again
+	side        Side    // NoSide while no obstacle is dealt with
+	parted      bool    // an obstacle on the way to this goal has been left
 	partedBest  float64 // d_min then
+	partedSide  Side    // side then
 	deceptions  int     // meetings in a row that brought no progress
 	loop        loop
 }
 
 const (
-	leastProgress = 0.05 // m nearer to the goal than before, for an obstacle to be met in good order
+	leastProgress = 0.24 // hull radii nearer to the goal than before, for an obstacle to be met in good order
 	maxDeceptions = 2    // in a row, before side and meeting point stay
 )
 
@@ -63,7 +64,7 @@ func (e *Engine) keepTrack(in *Input) {
 	if carried || !t.begun || in.Goal != t.goal {
 		t.begun = true
 		t.goal, t.origin = in.Goal, t.plan
-		t.parted = false
+		t.parted, t.deceptions = false, 0
 		e.startMeeting()
 	}
 	t.best = math.Min(t.best, t.distance)
@@ -87,10 +88,9 @@ func (e *Engine) startMeeting() {
 // the end the boundary closes.
 func (e *Engine) meet(in *Input, m *Mode) {
 	t := &e.track
-	e.wall.known = false
-	before, best := t.side, t.partedBest
-	deceived := t.parted && t.distance > best-leastProgress
+	deceived := t.parted && t.distance > t.partedBest-float64(leastProgress*in.Hull)
 	t.parted = false
+	e.wall.known = false
 	if !deceived {
 		t.deceptions = 0
 		e.startMeeting()
@@ -98,20 +98,24 @@ func (e *Engine) meet(in *Input, m *Mode) {
 		return
 	}
 	t.deceptions++
+	t.side = t.partedSide
 	if t.deceptions > maxDeceptions {
 		return
 	}
 	e.startMeeting()
-	e.chooseSide(in, m)
-	t.best = best
-	if m.Side == BetterSide && before != NoSide {
-		t.side = -before
+	t.best = t.partedBest
+	if m.Side == BetterSide {
+		t.side = -t.side
+	} else {
+		e.chooseSide(in, m)
 	}
 }
 
 // part ends dealing with an obstacle.
-func (e *Engine) part(in *Input) {
-	e.track.parted, e.track.partedBest = true, e.track.best
+func (e *Engine) part() {
+	t := &e.track
+	t.parted, t.partedBest, t.partedSide = true, t.best, t.side
+	t.side = NoSide
 }
 
 // loop finds out whether a boundary has been followed back to where it has been
@@ -121,10 +125,12 @@ func (e *Engine) part(in *Input) {
 // place is where the robot has settled on the boundary after the meeting. But the way
 // in may have been a spur that the boundary, followed round, never comes back to;
 // so further places are marked as the way grows, each time by half (as Brent's
-// method finds a cycle whose beginning is not known), and the oldest is given up for the new one.
+// method finds a cycle whose beginning is not known), and the oldest but the first
+// is given up for the new one.
 type loop struct {
 	way    float64 // followed since the meeting, m
-	from   geom.Vec
+	from   geom.Vec // a place now and then, hull/4 apart
+	since  float64  // way at that place
 	marks  [6]mark
 	next   int
 	again  float64 // way at which the next mark is due
@@ -139,17 +145,22 @@ type mark struct {
 	way       float64
 }
 
-// cramped is the way, in hull radii, after which a robot that never got away from a place counts as back at it.
-const cramped = 25
+// A robot that has no room to go round counts as having done so: after as much way,
+// in hull radii, on the spot, or without getting well away from a place.
+const (
+	pinned  = 4
+	cramped = 25
+)
 
 func (l *loop) follow(pos, wall geom.Vec, step, hull float64) {
 	l.way += step
 	d := pos.Sub(l.from)
 	if d.Norm() < hull/4 {
+		l.closed = l.closed || l.way-l.since > pinned*hull
 		return
 	}
 	dir := d.Unit()
-	l.from = pos
+	l.from, l.since = pos, l.way
 	for i := range l.marks {
 		m := &l.marks[i]
 		if !m.set {
@@ -168,7 +179,9 @@ func (l *loop) follow(pos, wall geom.Vec, step, hull float64) {
 	}
 	if l.way >= math.Max(l.again, 3*hull) {
 		l.marks[l.next] = mark{set: true, at: pos, dir: dir, wall: wall, way: l.way}
-		l.next = (l.next + 1) % len(l.marks)
+		if l.next++; l.next == len(l.marks) {
+			l.next = 1
+		}
 		l.again = 1.5 * l.way
 	}
 }
