@@ -128,7 +128,7 @@ func (e *Engine) part() {
 // method finds a cycle whose beginning is not known), and the oldest but the first
 // is given up for the new one.
 type loop struct {
-	way    float64 // followed since the meeting, m
+	way    float64  // followed since the meeting, m
 	from   geom.Vec // a place now and then, hull/4 apart
 	since  float64  // way at that place
 	marks  [6]mark
