@@ -58,8 +58,10 @@ func TestResetKeepsMemory(t *testing.T) {
 	}
 	reset()
 	check := testing.AllocsPerRun(20, func() { _ = c.Check() })
-	// One more is the copy of the config that is handed over: the race detector moves it to the heap.
-	if n := testing.AllocsPerRun(20, reset); n > check+1 {
+	// The race detector moves the copy of the config to the heap and empties fmt's pools at random, so that the counts
+	// of Check differ by a few; making a run anew would take many more.
+	const few = 16
+	if n := testing.AllocsPerRun(20, reset); n > check+few {
 		t.Errorf("%v allocations, of which Check makes %v", n, check)
 	}
 }
