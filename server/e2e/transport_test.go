@@ -143,4 +143,13 @@ func TestSpeeds(t *testing.T) {
 	p.until("the run has speed 1", func() bool { return p.last().Speed == 1 })
 	p.click("[data-do=play]")
 	p.until("it begins again", func() bool { f := p.last(); return f.Playing && f.Status == "running" && f.Time < 10 })
+
+	// The keys work on with the focus on the chosen speed.
+	p.click(`.speeds input[value="2"]`)
+	p.until("the run has speed 2", func() bool { return p.last().Speed == 2 })
+	p.see("the page knows that it plays", `document.querySelector('[data-do=play]').ariaLabel === 'Pause'`)
+	p.keys(" ")
+	stood := p.settled()
+	p.keys(".")
+	p.ticks(stood.Tick + 1)
 }

@@ -100,7 +100,11 @@ const cell = (v) => ({ text: metres(v), bad: false });
 
 /** @param {{running: boolean, arrived: boolean, close: boolean, late: boolean, restless: boolean}} is */
 function judgement(is) {
-  if (is.close || is.late || is.restless || !(is.running || is.arrived)) return 'This run falls short.';
+  const short = 'This run falls short.';
+  if (is.close) return short;
+  if (!is.running && !is.arrived) return `It did not arrive. ${short}`;
+  if (is.late) return `Too late. ${short}`;
+  if (is.restless) return `Too many switches. ${short}`;
   return is.running ? 'So far it holds.' : 'This run keeps what is asked.';
 }
 

@@ -285,6 +285,7 @@ class NumberField {
     this.#typing = false;
     this.#hint();
     this.#write(entry.step(typed ?? this.#sent ?? this.#value, n, this.#range));
+    this.#input.select(); // what is typed next takes its place
     this.#later(REST);
   }
 

@@ -109,7 +109,10 @@ function entries(modes) {
 export function shortcut(event) {
   if (event.ctrlKey || event.metaKey || event.altKey || event.defaultPrevented) return null;
   const on = event.target instanceof Element ? event.target : null;
-  if (on?.closest('input, select, textarea, dialog[open]')) return null;
+  // A radio button has arrows and Space for itself, and Space only while it is not chosen.
+  const radio = on instanceof HTMLInputElement && on.type === 'radio';
+  if (!radio && on?.closest('input, select, textarea')) return null;
+  if (on?.closest('dialog[open]') || (radio && event.key === ' ' && !on.checked)) return null;
   switch (event.key) {
     case ' ':
       return on?.closest('button, a, summary') ? null : 'play';
